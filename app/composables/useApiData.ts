@@ -1,0 +1,39 @@
+interface ApiDataOptions {
+  query?: MaybeRefOrGetter<Record<string, unknown>>
+  /** The page makes no sense without it: a refusal shows the error page with its status. */
+  isFatal?: boolean
+  /** The page is shown at once and the data follows. */
+  isLazy?: boolean
+}
+
+/**
+ * Reads one address of ours for a page, again whenever the address or the query changes. Old data stays while new data loads.
+ * Await it to have the data in the first answer of the server.
+ */
+export function useApiData<Answer>(path: MaybeRefOrGetter<string>, options: ApiDataOptions = {}) {
+  const api = useApi()
+  const query = computed(() => clean(toValue(options.query) ?? {}))
+  const asyncData = useAsyncData(
+    () => `api:${toValue(path)}`,
+    (_app, { signal }) => api<Answer>(toValue(path), { query: query.value, signal }),
+    { watch: [query], lazy: options.isLazy ?? false, dedupe: 'cancel' },
+  )
+  const problem = computed(() => asyncData.error.value ? parseApiError(asyncData.error.value) : null)
+  if (options.isFatal) {
+    watch(problem, (now) => {
+      if (now && now.code !== 'not-signed-in') showError({ statusCode: now.status || 503, data: { code: now.code, requestId: now.requestId } })
+    }, { immediate: true })
+  }
+  const parts = {
+    data: asyncData.data,
+    problem,
+    isPending: computed(() => asyncData.status.value === 'pending' || asyncData.status.value === 'idle'),
+    refresh: () => asyncData.refresh(),
+  }
+  return Object.assign(Promise.resolve(asyncData).then(() => parts), parts)
+}
+
+/** Drops what is not asked for, so that the address stays short. */
+function clean(query: Record<string, unknown>): Record<string, unknown> {
+  return Object.fromEntries(Object.entries(query).filter(([, value]) => value !== undefined && value !== null && value !== ''))
+}
