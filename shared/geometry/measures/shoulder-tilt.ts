@@ -1,0 +1,14 @@
+import { tiltRecipe } from '../frontal-tilt'
+import { defineMeasure } from '../measure-definition'
+
+/** Line of the acromia against the horizontal; + person's left higher. */
+export const shoulderTilt = defineMeasure({
+  id: 'shoulderTilt',
+  reference: 'vertical',
+  recipes: [tiltRecipe(['frontal-anterior', 'frontal-posterior'], 'acromionLeft', 'acromionRight', 'trunk')],
+  judgedFrom: 5,
+  changeFloor: { deg: 3 },
+  segments: ['trunk'],
+  source: 'Line of the acromia to the horizontal. Shown as change, never judged under 5°: asymmetry is common in healthy adults, Ferreira et al. 2011, J Manipulative Physiol Ther 34:371–380.',
+  cautions: ['asymmetry-is-common', 'camera-roll', 'trunk-turn'],
+})
