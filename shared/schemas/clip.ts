@@ -78,3 +78,16 @@ export type UploadCompleteInput = z.infer<typeof UploadCompleteInputSchema>
 /** `GET /api/clips/:id/frames`: presentation time of each frame in microseconds, counted from the first. */
 export const FrameTableSchema = z.object({ timesUs: z.array(z.number().int()) })
 export type FrameTable = z.infer<typeof FrameTableSchema>
+
+/**
+ * `GET /api/clips/:id/filmstrip.json`: how the sprite `GET /api/clips/:id/filmstrip` is laid out, pixels of the sprite.
+ * Tile k lies in column k mod columns, row floor(k / columns), and shows `frames[k]`.
+ */
+export const FilmstripSchema = z.object({
+  columns: z.number().int(),
+  rows: z.number().int(),
+  tileWidth: z.number().int(),
+  tileHeight: z.number().int(),
+  frames: z.array(z.number().int()),
+})
+export type Filmstrip = z.infer<typeof FilmstripSchema>

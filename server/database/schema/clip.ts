@@ -1,6 +1,6 @@
 import { sql } from 'drizzle-orm'
-import { check, foreignKey, index, integer, pgTable, real, text, unique, uuid } from 'drizzle-orm/pg-core'
-import type { ClipRefusal } from '#shared/schemas/clip'
+import { check, foreignKey, index, integer, jsonb, pgTable, real, text, unique, uuid } from 'drizzle-orm/pg-core'
+import type { ClipRefusal, Filmstrip } from '#shared/schemas/clip'
 import type { View } from '#shared/schemas/reading'
 import { big, id, moment, timestamps } from './columns'
 import { bout } from './bout'
@@ -27,6 +27,10 @@ export const clip = pgTable('clip', {
   progress: real().notNull().default(0),
   /** Counts the runs of the job: a run that was overtaken may not write (fencing). */
   attempt: integer().notNull().default(0),
+  /** The run that counts holds the clip until then and extends it as it works; past it another run may take over. */
+  leaseUntil: moment(),
+  /** Runs in which the media tools died by a signal or ran out of time: the second one ends it. */
+  crashes: integer().notNull().default(0),
   originalKey: text().notNull(),
   uploadId: text(),
   partSize: integer().notNull(),
@@ -35,7 +39,7 @@ export const clip = pgTable('clip', {
   reviewSize: big(),
   posterKey: text(),
   filmstripKey: text(),
-  filmstripTiles: integer(),
+  filmstrip: jsonb().$type<Filmstrip>(),
   width: integer(),
   height: integer(),
   frameCount: integer(),
