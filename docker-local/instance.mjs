@@ -32,7 +32,7 @@ export async function openInstance({ data, port }) {
   const supervisor = createSupervisor(folder)
   try {
     await endOrphans(folder)
-    rmSync(folder.envFile, { force: true })
+    forgetEnvironment(folder)
     if (!await isPortFree(port)) throw new StartError(`port ${port} is in use by another program; choose another, for example: PORT=${port + 1} npm start`)
     const secrets = loadSecrets(folder)
     const ports = await choosePorts(SERVICE_PORTS, rememberedPorts(folder))
@@ -49,7 +49,7 @@ export async function openInstance({ data, port }) {
       seed: () => seed(context),
       async stop() {
         await supervisor.stop()
-        rmSync(folder.envFile, { force: true })
+        forgetEnvironment(folder)
         await lock.release()
       },
     }
@@ -82,6 +82,8 @@ function serverSettings({ folder, secrets, ports, origins, urls }) {
   return {
     NODE_ENV: 'production',
     HOST: '127.0.0.1',
+    // The pinned SDK runs on this Node; its notice about later versions would fill the logs.
+    AWS_SDK_JS_NODE_VERSION_SUPPORT_WARNING_DISABLED: 'true',
     STANDMARK_MODE: 'demo',
     STANDMARK_ORIGINS: origins.join(','),
     STANDMARK_SECRET: secrets.sessionSecret,
@@ -165,6 +167,11 @@ export function writeEnvironment({ folder, urls, ports, port, serverEnv }) {
   writeJson(folder.envFile, env)
   const lines = Object.entries(env).map(([name, value]) => `export ${name}='${value.replaceAll('\'', '\'\\\'\'')}'`)
   writeFileSync(join(folder.root, 'env.sh'), `${lines.join('\n')}\n`, { mode: 0o600 })
+}
+
+/** @param {import('./data-folder.mjs').DataFolder} folder */
+function forgetEnvironment(folder) {
+  for (const file of [folder.envFile, join(folder.root, 'env.sh')]) rmSync(file, { force: true })
 }
 
 /**
