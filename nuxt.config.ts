@@ -21,6 +21,7 @@ export default defineNuxtConfig({
     'nuxt-auth-utils',
     'nuxt-security',
   ],
+  auth: { loadStrategy: 'none' },
   ...(buildDir ? { buildDir } : {}),
   telemetry: false,
   devtools: { enabled: false },
@@ -41,7 +42,7 @@ export default defineNuxtConfig({
   },
   css: ['~/assets/css/fonts.css', '~/assets/css/tokens.css', '~/assets/css/base.css'],
   tailwindcss: { viewer: false, cssPath: ['~/assets/css/tailwind.css', { injectPosition: 'first' }], configPath: 'tailwind.config' },
-  pinia: { storesDirs: ['app/stores'] },
+  pinia: { storesDirs: ['stores'] },
   i18n: {
     restructureDir: 'app/i18n',
     defaultLocale: 'en',
@@ -52,8 +53,8 @@ export default defineNuxtConfig({
     bundle: { optimizeTranslationDirective: false },
   },
   runtimeConfig: {
-    // Filled from NUXT_SESSION_PASSWORD at start; the seal carries nothing but the id of a row in `session`.
-    session: { name: 'standmark', password: '', maxAge: 43_200, sessionHeader: false, cookie: { sameSite: 'lax', path: '/', httpOnly: true } },
+    // Name, password and flags of the cookie are set in server/utils/session.ts, where the mode is known.
+    session: { password: '', sessionHeader: false },
   },
   // The module's limiter, filter and size check do harm here (see DEVELOPERS.md, decisions); ours are in server/.
   security: {
@@ -112,6 +113,12 @@ export default defineNuxtConfig({
     compressPublicAssets: true,
     typescript: { strict: true },
     esbuild: { options: { target: 'node20' } },
+  },
+  hooks: {
+    // The session routes of nuxt-auth-utils answer from the cookie alone; ours ask the database (server/api/auth, /api/me).
+    'nitro:config'(config) {
+      config.handlers = config.handlers?.filter(handler => handler.route !== '/api/_auth/session')
+    },
   },
   vite: { build: { target: 'es2022' } },
 })
