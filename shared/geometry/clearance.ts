@@ -9,6 +9,7 @@ export function clearanceRecipe(lower: LandmarkId, upper: LandmarkId, segment: S
     landmarks: [lower, upper],
     unit: 'mm',
     needsScale: true,
+    facingFree: true,
     compute: (at, { toMillimetres }) => toMillimetres(rise(at(lower), at(upper))),
     lines: [{ from: [lower], to: [upper], segment }],
     shownAt: [lower, upper],

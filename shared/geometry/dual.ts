@@ -10,12 +10,15 @@ export interface Dual {
   readonly gradient: readonly number[]
   /**
    * Parts of the formula whose own sd must stay small for the linear band to be honest: each direction (radians)
-   * and each divisor (relative to itself).
+   * and each divisor (relative to itself, weighted).
    */
   readonly fragile: readonly Dual[]
 }
 
 const NONE: readonly Dual[] = []
+
+/** A divisor bends the distribution twice as soon as a direction does (Monte Carlo test), so it counts double. */
+export const DIVISOR_WEIGHT = 2
 
 function joined(a: readonly Dual[], b: readonly Dual[]): readonly Dual[] {
   if (b.length === 0) return a
@@ -23,19 +26,33 @@ function joined(a: readonly Dual[], b: readonly Dual[]): readonly Dual[] {
   return [...a, ...b]
 }
 
-/** The input number `index` of `count` inputs. */
-export function inputDual(value: number, index: number, count: number): Dual {
+function unitGradient(index: number, count: number): readonly number[] {
   const gradient = new Array<number>(count).fill(0)
   gradient[index] = 1
-  return { value, gradient, fragile: NONE }
+  return gradient
+}
+
+const MOST_INPUTS = 16
+/** Unit gradients by count and index: the same few serve every body, so they are made once. */
+const UNIT_GRADIENTS: readonly (readonly (readonly number[])[])[] = Array.from({ length: MOST_INPUTS + 1 }, (_, count) =>
+  Array.from({ length: count }, (_, index) => unitGradient(index, count)))
+
+/** Input number `index` of `count` inputs. */
+export function inputDual(value: number, index: number, count: number): Dual {
+  return { value, gradient: UNIT_GRADIENTS[count]?.[index] ?? unitGradient(index, count), fragile: NONE }
+}
+
+function scaled(gradient: readonly number[], factor: number): readonly number[] {
+  const result = new Array<number>(gradient.length)
+  for (let i = 0; i < gradient.length; i++) result[i] = factor * (gradient[i] ?? 0)
+  return result
 }
 
 /** wa · a + wb · b. */
 export function combine(a: Dual, wa: number, b: Dual, wb: number): Dual {
-  const gradient: number[] = []
-  for (let i = 0; i < a.gradient.length; i++) {
-    gradient.push(wa * (a.gradient[i] ?? 0) + wb * (b.gradient[i] ?? 0))
-  }
+  const count = a.gradient.length
+  const gradient = new Array<number>(count)
+  for (let i = 0; i < count; i++) gradient[i] = wa * (a.gradient[i] ?? 0) + wb * (b.gradient[i] ?? 0)
   return { value: wa * a.value + wb * b.value, gradient, fragile: joined(a.fragile, b.fragile) }
 }
 
@@ -48,7 +65,7 @@ export function subtract(a: Dual, b: Dual): Dual {
 }
 
 export function scaleBy(a: Dual, factor: number): Dual {
-  return { value: a.value * factor, gradient: a.gradient.map(part => part * factor), fragile: a.fragile }
+  return { value: a.value * factor, gradient: scaled(a.gradient, factor), fragile: a.fragile }
 }
 
 export function multiply(a: Dual, b: Dual): Dual {
@@ -60,8 +77,8 @@ export function multiply(a: Dual, b: Dual): Dual {
 export function divide(a: Dual, b: Dual): Dual {
   const value = a.value / b.value
   const slope = combine(a, 1 / b.value, b, -value / b.value)
-  const relative: Dual = { value: 1, gradient: b.gradient.map(part => part / b.value), fragile: NONE }
-  return { value, gradient: slope.gradient, fragile: [...slope.fragile, relative] }
+  const relative: Dual = { value: 1, gradient: scaled(b.gradient, DIVISOR_WEIGHT / b.value), fragile: NONE }
+  return { value, gradient: slope.gradient, fragile: joined(slope.fragile, [relative]) }
 }
 
 export function absolute(a: Dual): Dual {
@@ -80,5 +97,5 @@ export function arctangent(y: Dual, x: Dual): Dual {
   const square = x.value * x.value + y.value * y.value
   const slope = combine(y, x.value / square, x, -y.value / square)
   const direction: Dual = { value: Math.atan2(y.value, x.value), gradient: slope.gradient, fragile: NONE }
-  return { ...direction, fragile: [...slope.fragile, direction] }
+  return { value: direction.value, gradient: direction.gradient, fragile: joined(slope.fragile, [direction]) }
 }

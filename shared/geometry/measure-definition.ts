@@ -32,6 +32,8 @@ export interface Recipe<K extends LandmarkId = LandmarkId> {
   readonly landmarks: readonly K[]
   readonly unit: Unit
   readonly needsScale?: true
+  /** The formula does not ask where the person faces (sagittal view). */
+  readonly facingFree?: true
   /** Radians for `deg`, else the unit itself; from points that are already turned upright. */
   readonly compute: (at: (id: K) => DualPoint, frame: Frame) => Dual
   /** Lines that show it on the picture. */

@@ -5,7 +5,7 @@ import { type Roll, rollInDegrees } from './plumb-line'
 import { poseOf } from './pose'
 import type { Reading, WarningCode, WithheldReading } from './reading'
 import type { MeasuredScale } from './scale'
-import { type Judging, takeReading } from './take-reading'
+import { frameOf, type Judging, takeReading } from './take-reading'
 import { DEFAULT_JUDGEMENT, type TargetJudgement, type TargetZone } from './target'
 
 /** What a clinic may set. */
@@ -45,6 +45,7 @@ function judgingOf(plan: MeasurePlan, options: MeasureOptions): Judging {
  */
 export function measureMarking(body: MarkingBody, options: MeasureOptions = {}): MeasuredMarking {
   const pose = poseOf(body, options.repeatability ?? {})
+  const frame = frameOf(pose)
   const readings: Reading[] = []
   const gaps: WithheldReading[] = []
   for (const plan of MEASURE_PLANS[body.view]) {
@@ -57,7 +58,7 @@ export function measureMarking(body: MarkingBody, options: MeasureOptions = {}):
       gaps.push(explainMissing(plan, pose))
       continue
     }
-    const reading = takeReading(plan, recipe, pose, body, judgingOf(plan, options))
+    const reading = takeReading(plan, recipe, pose, frame, body.view, judgingOf(plan, options))
     if (reading) readings.push(reading)
     else gaps.push(withhold(plan, 'degenerate'))
   }

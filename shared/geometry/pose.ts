@@ -6,7 +6,7 @@ import type { LandmarkId, Side } from './landmarks'
 import type { Facing, MarkingBody } from './marking'
 import { cameraRoll, LARGE_ROLL } from './plumb-line'
 import type { WarningCode } from './reading'
-import { measureScale, type MeasuredScale } from './scale'
+import { LARGEST_SCALE_SD, measureScale, type MeasuredScale } from './scale'
 
 /** A landmark turned upright about the picture centre. Its sd is the same in every direction, so turning leaves it. */
 export interface PosePoint {
@@ -26,6 +26,8 @@ export interface Pose {
   readonly facing: AxisSign | null
   /** `m` of a frontal view. */
   readonly viewSign: AxisSign
+  /** The stated near side of a sagittal view, else null. */
+  readonly nearSide: Side | null
   /** Landmarks of pairs whose left and right look exchanged. */
   readonly swapped: ReadonlySet<LandmarkId>
   /** Warnings about the picture as a whole, without those of single readings. */
@@ -121,5 +123,6 @@ export function poseOf(body: MarkingBody, repeatability: Repeatability): Pose {
   if (swapped.size > 0) warnings.push('left-right-swapped')
   if (roll.source === 'assumed') warnings.push('no-plumb-line')
   if (Math.abs(roll.angle) > toRadians(LARGE_ROLL)) warnings.push('large-roll')
-  return { points, roll, scale, facing, viewSign, swapped, warnings }
+  if (scale && scale.sdPx > LARGEST_SCALE_SD * scale.lengthPx) warnings.push('scale-too-short')
+  return { points, roll, scale, facing, viewSign, nearSide: isSagittal ? body.side ?? null : null, swapped, warnings }
 }

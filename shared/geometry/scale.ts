@@ -7,6 +7,9 @@ const LONGEST_SCALE_MM = 1_000_000
 /** Two ends closer than this cannot be told apart. */
 const SMALLEST_SCALE_PX = 1e-6
 
+/** Relative sd of a scale's length from which its linear band is not honest any more, as for any divisor. */
+export const LARGEST_SCALE_SD = 0.1
+
 /** A known length on the picture. */
 export interface MeasuredScale {
   readonly lengthMm: number

@@ -14,7 +14,7 @@ function sideBendRecipe(view: View, pelvisLeft: LandmarkId, pelvisRight: Landmar
     ),
     lines: [
       { from: ['acromionRight'], to: ['acromionLeft'], segment: 'trunk' },
-      { from: [pelvisRight], to: [pelvisLeft], segment: 'thigh' },
+      { from: [pelvisRight], to: [pelvisLeft], segment: 'trunk' },
     ],
     shownAt: ['acromionLeft', 'acromionRight', pelvisLeft, pelvisRight],
   })
@@ -29,7 +29,7 @@ export const trunkOnPelvis = defineMeasure({
     sideBendRecipe('frontal-posterior', 'psisLeft', 'psisRight'),
   ],
   changeFloor: { deg: 3 },
-  segments: ['trunk', 'thigh'],
+  segments: ['trunk'],
   source: 'Shoulder tilt less pelvic tilt. Not judged.',
   cautions: ['asymmetry-is-common', 'trunk-turn'],
 })
