@@ -50,7 +50,6 @@ export default defineNuxtConfig({
     detectBrowserLanguage: false,
     telemetry: false,
     locales: [{ code: 'en', language: 'en-US', name: 'English', files: LOCALE_FILES.map(name => `en/${name}.json`) }],
-    bundle: { optimizeTranslationDirective: false },
   },
   runtimeConfig: {
     // Name, password and flags of the cookie are set in server/utils/session.ts, where the mode is known.
@@ -117,7 +116,7 @@ export default defineNuxtConfig({
   hooks: {
     // The session routes of nuxt-auth-utils answer from the cookie alone; ours ask the database (server/api/auth, /api/me).
     'nitro:config'(config) {
-      config.handlers = config.handlers?.filter(handler => handler.route !== '/api/_auth/session')
+      config.handlers = config.handlers?.filter(handler => handler?.route !== '/api/_auth/session')
     },
   },
   vite: { build: { target: 'es2022' } },

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { ROLES } from '#shared/types/role'
-import { IdSchema, listOf } from './common'
+import { IdSchema, listOf, PageQuerySchema } from './common'
 
 export const SignInInputSchema = z.strictObject({
   email: z.string().trim().min(3).max(254),
@@ -29,3 +29,5 @@ export const MemberSchema = z.object({
 })
 export type Member = z.infer<typeof MemberSchema>
 export const MemberListSchema = listOf(MemberSchema)
+
+export const MemberListQuerySchema = PageQuerySchema.extend({ role: z.enum(ROLES).optional() })

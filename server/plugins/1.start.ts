@@ -1,0 +1,17 @@
+import { logger } from '#server/adapters/logger'
+import { settings, SettingsError } from '#server/adapters/settings'
+import { closeDatabase, openDatabase } from '#server/database/client'
+
+/** Start: settings first; a missing or unsafe one ends the process with one clear line. */
+export default defineNitroPlugin((nitroApp) => {
+  try {
+    const { databaseUrl, secret } = settings()
+    process.env.NUXT_SESSION_PASSWORD ??= secret
+    openDatabase(databaseUrl, error => logger.warn({ err: error }, 'a database connection broke'))
+  } catch (error) {
+    if (!(error instanceof SettingsError)) throw error
+    process.stderr.write(`Standmark does not start: ${error.message}\n`)
+    process.exit(78)
+  }
+  nitroApp.hooks.hook('close', closeDatabase)
+})
