@@ -25,6 +25,12 @@ function sessionConfig() {
 const opened = new Map<string, string>()
 const OPENED_LIMIT = 1000
 
+function tokenOf(session: { data: object } | null): string | null {
+  const secure: unknown = session ? Reflect.get(session.data, 'secure') : null
+  const token: unknown = secure && typeof secure === 'object' ? Reflect.get(secure, 'token') : null
+  return typeof token === 'string' ? token : null
+}
+
 /** @returns the token in the request's cookie, or null without a cookie of ours. */
 export async function readSessionToken(event: H3Event): Promise<string | null> {
   const config = sessionConfig()
@@ -32,9 +38,8 @@ export async function readSessionToken(event: H3Event): Promise<string | null> {
   if (!seal || seal.length > 4096) return null
   const known = opened.get(seal)
   if (known) return known
-  const session = await unsealSession(event, config, seal).catch(() => null)
-  const secure: unknown = session?.data && 'secure' in session.data ? session.data.secure : null
-  const token = secure && typeof secure === 'object' && 'token' in secure && typeof secure.token === 'string' ? secure.token : null
+  const unsealed = await unsealSession(event, config, seal).catch(() => null)
+  const token = tokenOf(unsealed?.data ? { data: unsealed.data } : null)
   if (!token) return null
   if (opened.size >= OPENED_LIMIT) opened.delete(opened.keys().next().value ?? '')
   opened.set(seal, token)

@@ -22,8 +22,16 @@ export async function findAccountSecret(tx: Transaction, email: string): Promise
 
 export interface SessionRow {
   [column: string]: unknown
-  session_id: string, user_id: string, clinic_id: string, name: string, email: string, roles: string[]
-  patient_id: string | null, clinic_name: string, time_zone: string, units: 'metric' | 'us'
+  session_id: string
+  user_id: string
+  clinic_id: string
+  name: string
+  email: string
+  roles: string[]
+  patient_id: string | null
+  clinic_name: string
+  time_zone: string
+  units: 'metric' | 'us'
 }
 
 export async function findSession(tx: Transaction, tokenHash: Buffer, idleSeconds: number): Promise<SessionRow | null> {

@@ -88,4 +88,3 @@ export async function updateBout(tx: Transaction, boutId: string, fields: Partia
   if (!changed) throw new Error('The bout row was not changed')
   return changed
 }
-
