@@ -78,3 +78,15 @@ export function isDocumentEmpty(document: MarkingDocument): boolean {
     && document.plumbLine === null
     && document.scale === null
 }
+
+/** JSON with the keys of every object in order, so that equal things give equal texts. */
+function canonicalJson(value: unknown): string {
+  return JSON.stringify(value, (_key, part: unknown) => typeof part === 'object' && part !== null && !Array.isArray(part)
+    ? Object.fromEntries(Object.entries(part).sort(([a], [b]) => a < b ? -1 : 1))
+    : part)
+}
+
+/** @returns whether two documents say the same, whatever the order in which things were marked or kept. */
+export function isSameDocument(a: MarkingDocument, b: MarkingDocument): boolean {
+  return a === b || canonicalJson(a) === canonicalJson(b)
+}

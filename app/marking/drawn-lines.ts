@@ -1,89 +1,40 @@
-import type { LandmarkId, Segment, View } from '#shared/geometry/landmarks'
+import type { LandmarkId, Segment } from '#shared/geometry/landmarks'
+import type { MarkingBody } from '#shared/geometry/marking'
 import { imagePoint } from '#shared/geometry/point'
 import type { ImagePoint } from '#shared/geometry/point'
-import type { MeasureLine } from '#shared/geometry/measure-definition'
-import { measuresOf } from '#shared/geometry/registry'
-import type { MarkingDocument } from './document'
+import type { Reading } from '#shared/geometry/reading'
+import { segmentLines } from '#shared/geometry/wedge'
+import type { ErrorWedge } from '#shared/geometry/wedge'
 
-/** A line that is drawn on the picture between two landmarks or means of landmarks. */
+/** A line that is drawn on the picture; `id` stays the same while its ends move. */
 export interface DrawnLine {
   readonly id: string
+  readonly measure: string | null
   readonly segment: Segment
   readonly from: ImagePoint
   readonly to: ImagePoint
-  /** Half the 95 % band of the line's own direction in degrees, or `null` when no reading tells. */
-  readonly halfBandDeg: number | null
+  readonly wedge: ErrorWedge | null
 }
 
-/** As much of a reading as the picture needs. */
-export interface BandReading { readonly measure: string, readonly side?: string | undefined, readonly low: number, readonly high: number }
+/** Arms bear no angle of their own; their lines only help the eye. */
+const ARM_LINES: readonly (readonly [LandmarkId, LandmarkId])[] = [
+  ['acromion', 'elbow'], ['elbow', 'wrist'], ['acromionLeft', 'elbowLeft'], ['acromionRight', 'elbowRight'],
+]
 
-function meanOf(document: MarkingDocument, ids: readonly LandmarkId[]): ImagePoint | null {
-  const points = ids.map(id => document.landmarks[id])
-  let x = 0
-  let y = 0
-  for (const point of points) {
-    if (!point) return null
-    x += point.x / points.length
-    y += point.y / points.length
-  }
-  return imagePoint(x, y)
-}
-
-function keyOf(line: MeasureLine): string {
-  return [line.from, line.to].map(ids => ids.join('+')).sort().join('|')
-}
-
-/** Lines of a view with the measure whose reading is the line's own direction, where there is one. */
-function linesOf(view: View): ReadonlyMap<string, { readonly line: MeasureLine, readonly measure: string | null }> {
-  const lines = new Map<string, { line: MeasureLine, measure: string | null }>()
-  for (const measure of measuresOf(view)) {
-    for (const recipe of measure.recipes) {
-      if (!recipe.views.includes(view) || !isShown(measure.id, recipe.unit)) continue
-      const owner = recipe.unit === 'deg' && recipe.lines.length === 1 ? measure.id : null
-      for (const line of recipe.lines) {
-        const known = lines.get(keyOf(line))
-        if (!known) lines.set(keyOf(line), { line, measure: owner })
-        else if (owner && !known.measure) lines.set(keyOf(line), { line, measure: owner })
-      }
-    }
-  }
-  return lines
-}
-
-/** Angles show their lines; of the offsets only the upper arm does, the others would cover the body with lines. */
-function isShown(measure: string, unit: string): boolean {
-  return unit === 'deg' || measure === 'elbowUnderShoulder'
+function armLines(body: MarkingBody): readonly DrawnLine[] {
+  return ARM_LINES.flatMap(([first, second]) => {
+    const from = body.landmarks[first]
+    const to = body.landmarks[second]
+    if (!from || !to) return []
+    return [{ id: `${first}-${second}`, measure: null, segment: 'arm' as const, from: imagePoint(from.x, from.y), to: imagePoint(to.x, to.y), wedge: null }]
+  })
 }
 
 /**
- * The lines whose ends are all marked, each once, with the band of its direction.
- * @param readings of this very document; a line without one has no band.
+ * The lines whose ends are all marked, with the wedge of the 95 % band where a reading tells it, in the order in which they are drawn.
+ * @param readings of this very body; without them the lines have no wedges.
  */
-export function drawnLines(document: MarkingDocument, view: View, readings: readonly BandReading[]): readonly DrawnLine[] {
-  const drawn: DrawnLine[] = []
-  for (const [id, { line, measure }] of linesOf(view)) {
-    const from = meanOf(document, line.from)
-    const to = meanOf(document, line.to)
-    if (!from || !to) continue
-    const reading = measure === null ? undefined : readings.find(candidate => candidate.measure === measure)
-    drawn.push({ id, segment: line.segment, from, to, halfBandDeg: reading ? (reading.high - reading.low) / 2 : null })
-  }
-  return drawn
-}
-
-/**
- * The band as a triangle: its tip at the line's beginning, as long as the line, opened by the band on both sides.
- * @returns tip, one corner, other corner in picture pixels; `null` without a band. Bands of 80° and more are drawn as 80°.
- */
-export function bandTriangle(line: DrawnLine): readonly [ImagePoint, ImagePoint, ImagePoint] | null {
-  if (line.halfBandDeg === null || !(line.halfBandDeg > 0)) return null
-  const half = Math.min(line.halfBandDeg, 80) * Math.PI / 180
-  const dx = line.to.x - line.from.x
-  const dy = line.to.y - line.from.y
-  const turned = (angle: number) => imagePoint(
-    line.from.x + dx * Math.cos(angle) - dy * Math.sin(angle),
-    line.from.y + dx * Math.sin(angle) + dy * Math.cos(angle),
-  )
-  return [line.from, turned(half), turned(-half)]
+export function drawnLines(body: MarkingBody, readings: readonly Reading[]): readonly DrawnLine[] {
+  const segments = segmentLines(body, readings).map((line, index) => ({ ...line, id: line.measure ?? `segment-${index}` }))
+  return [...armLines(body), ...segments]
 }

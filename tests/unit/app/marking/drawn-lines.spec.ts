@@ -1,46 +1,36 @@
 import { describe, expect, it } from 'vitest'
-import { EMPTY_DOCUMENT } from '~/marking/document'
-import { bandTriangle, drawnLines } from '~/marking/drawn-lines'
+import { measureMarking } from '#shared/geometry/measure-marking'
+import { drawnLines } from '~/marking/drawn-lines'
 
-const document = {
-  ...EMPTY_DOCUMENT,
+const body = {
+  view: 'sagittal',
+  width: 1440,
+  height: 1080,
+  facing: 'right',
   landmarks: { acromion: { x: 500, y: 260 }, greaterTrochanter: { x: 510, y: 520 }, lateralEpicondyle: { x: 516, y: 760 } },
-}
+} as const
 
 describe('drawnLines', () => {
-  it('draws each line once, in the hue of its segment, as soon as both ends are marked', () => {
-    const lines = drawnLines(document, 'sagittal', [])
+  it('draws each line once, as soon as both ends are marked, with the band of its reading', () => {
+    const lines = drawnLines(body, measureMarking(body).readings)
     expect(lines.map(line => line.segment).sort()).toEqual(['thigh', 'trunk'])
-    expect(lines.find(line => line.segment === 'trunk')).toMatchObject({ from: { x: 510, y: 520 }, to: { x: 500, y: 260 }, halfBandDeg: null })
+    const trunk = lines.find(line => line.segment === 'trunk')
+    expect(trunk).toMatchObject({ from: { x: 510, y: 520 }, to: { x: 500, y: 260 } })
+    expect(trunk?.wedge?.halfAngle).toBeGreaterThan(1)
   })
-  it('gives a line the band of the reading that is its direction', () => {
-    const readings = [{ measure: 'trunkInclination', low: -4, high: -1 }, { measure: 'hipFlexion', low: -9, high: 9 }]
-    const lines = drawnLines(document, 'sagittal', readings)
-    expect(lines.find(line => line.segment === 'trunk')?.halfBandDeg).toBe(1.5)
-    expect(lines.find(line => line.segment === 'thigh')?.halfBandDeg).toBeNull()
-  })
-  it('draws frontal lines through the means of paired landmarks', () => {
-    const frontal = {
-      ...EMPTY_DOCUMENT,
-      landmarks: { acromionLeft: { x: 600, y: 300 }, acromionRight: { x: 400, y: 310 }, asisLeft: { x: 560, y: 600 }, asisRight: { x: 440, y: 600 } },
-    }
-    const axis = drawnLines(frontal, 'frontal-anterior', []).find(line => line.from.x === 500 && line.from.y === 600)
-    expect(axis?.to).toEqual({ x: 500, y: 305 })
-  })
-})
 
-describe('bandTriangle', () => {
-  it('opens from the beginning of the line by the band on either side', () => {
-    const [line] = drawnLines(document, 'sagittal', [{ measure: 'trunkInclination', low: -4, high: 2 }])
-    const triangle = line && bandTriangle(line)
-    expect(triangle?.[0]).toEqual(line?.from)
-    const direction = (index: 1 | 2) => triangle ? Math.atan2(triangle[index].y - 520, triangle[index].x - 510) * 180 / Math.PI : NaN
-    const middle = Math.atan2(260 - 520, 500 - 510) * 180 / Math.PI
-    expect(direction(1) - middle).toBeCloseTo(3, 9)
-    expect(direction(2) - middle).toBeCloseTo(-3, 9)
+  it('draws lines without bands where there is no reading', () => {
+    expect(drawnLines(body, []).map(line => line.wedge)).toEqual([null, null])
   })
-  it('is nothing without a band', () => {
-    const [line] = drawnLines(document, 'sagittal', [])
-    expect(line && bandTriangle(line)).toBeNull()
+
+  it('draws the arm, which has no band', () => {
+    const withArm = { ...body, landmarks: { ...body.landmarks, elbow: { x: 520, y: 400 }, wrist: { x: 620, y: 420 } } }
+    const arms = drawnLines(withArm, measureMarking(withArm).readings).filter(line => line.segment === 'arm')
+    expect(arms.map(line => [line.from.x, line.to.x, line.wedge])).toEqual([[500, 520, null], [520, 620, null]])
+  })
+
+  it('gives every line an id of its own', () => {
+    const lines = drawnLines(body, measureMarking(body).readings)
+    expect(new Set(lines.map(line => line.id)).size).toBe(lines.length)
   })
 })
