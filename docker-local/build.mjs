@@ -49,7 +49,12 @@ async function makeBuild(hash) {
   const fresh = join(BUILDS, `${hash}.tmp`)
   rmSync(fresh, { recursive: true, force: true })
   const output = join(fresh, 'output')
-  await run(process.execPath, [join(PROJECT, 'node_modules/nuxt/bin/nuxt.mjs'), 'build'], {
+  const nuxt = join(PROJECT, 'node_modules/nuxt/bin/nuxt.mjs')
+  // tsconfig.json refers to files that Nuxt writes, and the build stops where one is missing, as in a fresh clone.
+  if (!existsSync(join(PROJECT, '.nuxt/tsconfig.app.json'))) {
+    await run(process.execPath, [nuxt, 'prepare'], { log: join(BUILDS, 'logs', 'prepare.log'), fresh: true, cwd: PROJECT, what: 'preparing the build' })
+  }
+  await run(process.execPath, [nuxt, 'build'], {
     log: join(BUILDS, 'logs', 'build.log'), fresh: true, cwd: PROJECT, what: 'the build',
     env: cleanEnvironment({ NODE_ENV: 'production', STANDMARK_BUILD_DIR: join(fresh, 'nuxt'), STANDMARK_OUTPUT_DIR: output }),
   })

@@ -8,6 +8,8 @@ import { complain, say } from './console.mjs'
  * @param {Record<string, string | undefined>} env the server's own settings
  */
 export async function ensureBucket(env) {
+  // The pinned SDK runs on this Node; its notice about later versions does not concern the person at the terminal.
+  process.env.AWS_SDK_JS_NODE_VERSION_SUPPORT_WARNING_DISABLED = 'true'
   const { S3Client, HeadBucketCommand, CreateBucketCommand } = await import('@aws-sdk/client-s3')
   const bucket = required(env, 'STANDMARK_STORAGE_BUCKET')
   const client = new S3Client({
