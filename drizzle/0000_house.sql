@@ -86,7 +86,10 @@ CREATE TABLE "clip_frame_table" (
 	"clip_id" uuid PRIMARY KEY NOT NULL,
 	"clinic_id" uuid NOT NULL,
 	"times_us" integer[] NOT NULL,
-	CONSTRAINT "clip_frame_table_first" CHECK ("clip_frame_table"."times_us"[1] = 0)
+	"key_frames" integer[] NOT NULL,
+	"key_offsets" bigint[] NOT NULL,
+	CONSTRAINT "clip_frame_table_first" CHECK ("clip_frame_table"."times_us"[1] = 0),
+	CONSTRAINT "clip_frame_table_keys" CHECK ("clip_frame_table"."key_frames"[1] = 0 and cardinality("clip_frame_table"."key_frames") = cardinality("clip_frame_table"."key_offsets"))
 );
 --> statement-breakpoint
 CREATE TABLE "clip" (
@@ -106,6 +109,8 @@ CREATE TABLE "clip" (
 	"reason" text,
 	"progress" real DEFAULT 0 NOT NULL,
 	"attempt" integer DEFAULT 0 NOT NULL,
+	"lease_until" timestamp (3) with time zone,
+	"crashes" integer DEFAULT 0 NOT NULL,
 	"original_key" text NOT NULL,
 	"upload_id" text,
 	"part_size" integer NOT NULL,
@@ -114,7 +119,7 @@ CREATE TABLE "clip" (
 	"review_size" bigint,
 	"poster_key" text,
 	"filmstrip_key" text,
-	"filmstrip_tiles" integer,
+	"filmstrip" jsonb,
 	"width" integer,
 	"height" integer,
 	"frame_count" integer,

@@ -1,3 +1,4 @@
+import { STATUS_CODES } from 'node:http'
 import { createError, setResponseHeader, type H3Error, type H3Event } from 'h3'
 import { logger } from '#server/adapters/logger'
 import { AppError, isDatabaseAway } from '#server/services/app-error'
@@ -18,6 +19,7 @@ export function toApiError(event: H3Event, error: unknown): H3Error {
   for (const [name, value] of Object.entries(headers ?? {})) setResponseHeader(event, name, value)
   return createError({
     statusCode: appError.statusCode,
+    statusMessage: STATUS_CODES[appError.statusCode] ?? 'Error',
     message: appError.message,
     data: { code: appError.code, requestId, ...(issues ? { issues } : {}), ...(current !== undefined ? { current } : {}) },
   })

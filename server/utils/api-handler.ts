@@ -79,6 +79,12 @@ function answer(event: H3Event, response: z.ZodType | 'none' | 'stream', status:
   return body
 }
 
+/** The present state that goes with a 412 passes through the same schema as an answer. */
+function withCleanState(error: unknown, response: z.ZodType | 'none' | 'stream'): unknown {
+  if (!(error instanceof AppError) || error.details.current === undefined || typeof response === 'string') return error
+  return new AppError(error.code, { ...error.details, current: response.parse(error.details.current) })
+}
+
 /**
  * The only way to write a route: who, may they, is the input right; then the service; then what may leave.
  * Errors of any kind become the error JSON of the interface.
@@ -112,7 +118,7 @@ export function defineApiHandler<
         : await run()
       return answer(event, response, status, result)
     } catch (error) {
-      throw toApiError(event, error)
+      throw toApiError(event, withCleanState(error, response))
     }
   })
 }
