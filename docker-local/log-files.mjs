@@ -4,7 +4,8 @@ import { join } from 'node:path'
 /** A log never grows past this; what was in it is kept once more as `<name>.log.1`. */
 const MAX_LOG_BYTES = 16 * 1024 * 1024
 const LINES_SHOWN = 25
-const CHARACTERS_SHOWN = 6000
+const LINE_LENGTH_SHOWN = 400
+const TEXT_LOOKED_AT = 64 * 1024
 
 /**
  * @param {string} folder
@@ -38,8 +39,8 @@ export function boundLog(file) {
  */
 export function lastLines(file) {
   if (!existsSync(file)) return ''
-  const text = readFileSync(file, 'utf8').slice(-CHARACTERS_SHOWN).trimEnd()
+  const text = readFileSync(file, 'utf8').slice(-TEXT_LOOKED_AT).trimEnd()
   if (text === '') return ''
-  const lines = text.split('\n').slice(-LINES_SHOWN).map(line => `    ${line}`)
+  const lines = text.split('\n').slice(-LINES_SHOWN).map(line => `    ${line.length > LINE_LENGTH_SHOWN ? `${line.slice(0, LINE_LENGTH_SHOWN)}…` : line}`)
   return [`  the last lines of ${file}:`, ...lines].join('\n')
 }

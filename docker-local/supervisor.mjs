@@ -31,6 +31,9 @@ import { identify, isAlive, isProcessIdentity } from './process-identity.mjs'
  */
 
 const CHECK_EVERY_MS = 150
+/** What is slow to start is asked less often: each question may cost a line in its log. */
+const SLOW_CHECK_EVERY_MS = 1000
+const SLOW_AFTER_MS = 5000
 const LOG_CHECK_EVERY_MS = 60_000
 const SLOWEST_RESTART_MS = 30_000
 /** After this long without a fall, a service counts as sound again. */
@@ -109,7 +112,7 @@ export function createSupervisor(folder) {
           entry.isReady = entry.failure === null
           if (entry.isReady) return
         }
-        await sleep(CHECK_EVERY_MS)
+        await sleep(Date.now() - entry.startedAt > SLOW_AFTER_MS ? SLOW_CHECK_EVERY_MS : CHECK_EVERY_MS)
       }
       if (isStopping) throw new StartError('stopped while starting')
       const how = entry.failure ?? `gave no answer within ${service.startSeconds} s`

@@ -6,14 +6,15 @@
  */
 import { existsSync, mkdirSync, readFileSync, statSync, writeFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
+import { setDisplayTurn } from '../../tests/fixtures/container/boxes.mjs'
 import { encodeFrames, paintFrames, sway } from '../../tests/fixtures/figure/film.mjs'
 import { CLIPS } from './clip-list.mjs'
 
 const at = name => fileURLToPath(new URL(name, import.meta.url))
 const ENCODERS = {
-  h264: ['-c:v', 'libx264', '-preset', 'slow', '-crf', '25', '-pix_fmt', 'yuv420p', '-movflags', '+faststart'],
+  h264: ['-c:v', 'libx264', '-preset', 'slow', '-crf', '21', '-pix_fmt', 'yuv420p', '-movflags', '+faststart'],
   // A phone stores its sideways sensor picture and a note how to turn it.
-  hevc: ['-vf', 'transpose=2', '-c:v', 'libx265', '-preset', 'medium', '-crf', '27', '-pix_fmt', 'yuv420p', '-tag:v', 'hvc1', '-x265-params', 'log-level=error', '-metadata:s:v', 'rotate=90'],
+  hevc: ['-vf', 'transpose=2', '-c:v', 'libx265', '-preset', 'medium', '-crf', '24', '-pix_fmt', 'yuv420p', '-tag:v', 'hvc1', '-x265-params', 'log-level=error'],
 }
 
 /** Angles at `seconds` between key poses, eased. */
@@ -39,12 +40,19 @@ const rounded = value => typeof value === 'number'
   ? Math.round(value * 1000) / 1000
   : Array.isArray(value) ? value.map(rounded) : value && typeof value === 'object' ? Object.fromEntries(Object.entries(value).map(([key, entry]) => [key, rounded(entry)])) : value
 
+function turnOnDisplay(path, stored) {
+  const bytes = readFileSync(path)
+  setDisplayTurn(bytes, 90, stored)
+  writeFileSync(path, bytes)
+}
+
 async function makeClip(file, clip, seed) {
   const { width, height, fps, seconds, camera, marked, codec = 'h264' } = clip
   const frames = Math.round(seconds * fps)
   const request = { view: clip.view, person: clip.person, facing: clip.facing, scene: clip.scene, frame: clip.frame, helper: clip.helper, bench: clip.bench, camera: { width, height, ...camera } }
   const painted = paintFrames({ frames, fps, request, poseAt: poseOf(clip, seed) })
   const truths = await encodeFrames(painted, { width, height, fps, output: at(`clips/${file}`), encoder: ENCODERS[codec] })
+  if (clip.turned) turnOnDisplay(at(`clips/${file}`), { width: height, height: width })
   const kept = codec === 'hevc' ? [0, frames - 1] : marked
   return { frames, fps, stills: Object.fromEntries(kept.map(frame => [frame, rounded(truths[frame])])) }
 }
