@@ -45,10 +45,10 @@ export const NOT_VISIBLE_REASONS = ['clothing', 'support', 'person', 'picture-ed
 export type NotVisibleReason = typeof NOT_VISIBLE_REASONS[number]
 
 /** State of one landmark: its point, the reason why it has none, or `null` when nobody looked yet. */
-export type LandmarkState
-  = | { readonly kind: 'marked', readonly point: MarkedLandmark }
-    | { readonly kind: 'not-visible', readonly reason: string }
-    | null
+export type LandmarkState =
+  | { readonly kind: 'marked', readonly point: MarkedLandmark }
+  | { readonly kind: 'not-visible', readonly reason: string }
+  | null
 
 /** @returns the state of landmark `name`. */
 export function landmarkState(document: MarkingDocument, name: string): LandmarkState {

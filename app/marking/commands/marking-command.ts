@@ -21,10 +21,10 @@ import { applySetScale, invertSetScale } from './set-scale'
 import type { SetScale } from './set-scale'
 
 /** Everything that can change a marking: plain JSON, so that undo and redo can be kept with a draft. */
-export type MarkingCommand
-  = | PlaceLandmark | MoveLandmark | RemoveLandmark | SetNotVisible
-    | SetPlumbLine | MovePlumbLineEnd | SetScale | MoveScaleEnd
-    | SetCircumstance | ReplaceDocument
+export type MarkingCommand =
+  | PlaceLandmark | MoveLandmark | RemoveLandmark | SetNotVisible
+  | SetPlumbLine | MovePlumbLineEnd | SetScale | MoveScaleEnd
+  | SetCircumstance | ReplaceDocument
 
 /**
  * @param command made for this very `document` (each command carries what it found).

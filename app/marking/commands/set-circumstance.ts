@@ -3,10 +3,10 @@ import type { Side } from '#shared/geometry/landmarks'
 import type { MarkingDocument } from '../document'
 
 /** What is said about the whole picture rather than drawn on it. */
-export type Circumstance
-  = | { readonly name: 'facing', readonly from: Facing | null, readonly to: Facing | null }
-    | { readonly name: 'side', readonly from: Side | null, readonly to: Side | null }
-    | { readonly name: 'mirrored' | 'clothed' | 'supported', readonly from: boolean, readonly to: boolean }
+export type Circumstance =
+  | { readonly name: 'facing', readonly from: Facing | null, readonly to: Facing | null }
+  | { readonly name: 'side', readonly from: Side | null, readonly to: Side | null }
+  | { readonly name: 'mirrored' | 'clothed' | 'supported', readonly from: boolean, readonly to: boolean }
 
 /** Facing, near side, mirrored file, clothing or support is said or said anew. */
 export interface SetCircumstance {
