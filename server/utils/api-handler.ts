@@ -27,6 +27,17 @@ export interface ApiDefinition<Can extends Permission | 'public' | 'signed-in', 
   ifMatch?: boolean
 }
 
+/** What a route says of itself; the published interface is made of it (openapi.ts). */
+export interface AnyApiDefinition {
+  can: Permission | 'public' | 'signed-in'
+  params?: Record<string, string>
+  query?: z.ZodType | undefined
+  body?: z.ZodType | undefined
+  response: z.ZodType | 'none' | 'stream'
+  status?: number
+  ifMatch?: boolean
+}
+
 interface HandlerInput<Can, Param extends string, Query, Body> {
   event: H3Event
   actor: ActorFor<Can>
@@ -98,9 +109,9 @@ export function defineApiHandler<
 >(
   definition: ApiDefinition<Can, Param, Query, Body, Response>,
   handle: (input: HandlerInput<Can, Param, Query, Body>) => Promise<unknown>,
-): EventHandler {
+): EventHandler & { apiDefinition: AnyApiDefinition } {
   const { can, params, query, body, response, status = 200, ifMatch = false } = definition
-  return defineEventHandler(async (event) => {
+  const handler = defineEventHandler(async (event) => {
     try {
       const actor = await admit(event, can)
       const input = body ? await readJsonBody(event) : null
@@ -121,4 +132,5 @@ export function defineApiHandler<
       throw toApiError(event, withCleanState(error, response))
     }
   })
+  return Object.assign(handler, { apiDefinition: definition })
 }

@@ -9,15 +9,18 @@ import { settings } from '#server/adapters/settings'
  */
 const SEAL_MAX_AGE_SECONDS = 43_200
 
+/** Secure cookies and their name prefix need https; the demo runs on plain http on loopback. */
+export function sessionCookieName(): string {
+  return settings().mode === 'demo' ? 'standmark' : '__Host-standmark'
+}
+
 function sessionConfig() {
-  // Secure cookies and their name prefix need https; the demo runs on plain http on loopback.
-  const isDemo = settings().mode === 'demo'
   return {
-    name: isDemo ? 'standmark' : '__Host-standmark',
+    name: sessionCookieName(),
     password: settings().secret,
     maxAge: SEAL_MAX_AGE_SECONDS,
     sessionHeader: false as const,
-    cookie: { path: '/', httpOnly: true, sameSite: 'lax' as const, secure: !isDemo },
+    cookie: { path: '/', httpOnly: true, sameSite: 'lax' as const, secure: settings().mode === 'production' },
   }
 }
 
