@@ -12,7 +12,7 @@ import { type TargetJudgement, targetStatus, type TargetZone } from './target'
 
 /**
  * Own sd of a direction in radians from which the linear band is not honest any more; a divisor counts double, so it is
- * half of this, relative to itself. Up to here the 95 % band holds 94 % or more and the sd is right to about 2 %: see
+ * half of this, relative to itself. Up to here the 95 % band holds 94 % or more and the sd is right to 4 %: see
  * `tests/unit/shared/geometry/linear-limit.spec.ts`.
  */
 export const LARGEST_LINEAR_SD = 0.2
