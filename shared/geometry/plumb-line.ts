@@ -17,7 +17,8 @@ export interface Roll {
   readonly source: 'plumb-line' | 'assumed'
 }
 
-interface RollAngles {
+/** The roll as the formulas use it, in radians. */
+export interface CameraRoll {
   readonly angle: Radians
   readonly sd: Radians
   readonly source: Roll['source']
@@ -28,7 +29,7 @@ interface RollAngles {
  * √2 · click error / length. Without a plumb line the roll is 0 with the assumed sd.
  * @throws GeometryError `plumb-line-too-short` under a third of the picture height.
  */
-export function cameraRoll(plumbLine: PlumbLine | null, pictureHeight: number): RollAngles {
+export function cameraRoll(plumbLine: PlumbLine | null, pictureHeight: number): CameraRoll {
   if (!plumbLine) return { angle: radians(0), sd: toRadians(ASSUMED_ROLL_SD), source: 'assumed' }
   const { top, bottom } = plumbLine.top.y <= plumbLine.bottom.y
     ? plumbLine
@@ -45,6 +46,6 @@ export function cameraRoll(plumbLine: PlumbLine | null, pictureHeight: number): 
 }
 
 /** The roll in degrees, for people. */
-export function rollInDegrees(roll: RollAngles): Roll {
+export function rollInDegrees(roll: CameraRoll): Roll {
   return { angle: toDegrees(roll.angle), sd: toDegrees(roll.sd), source: roll.source }
 }

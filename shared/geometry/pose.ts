@@ -4,7 +4,7 @@ import type { AxisSign } from './direction'
 import { type Repeatability, landmarkSd } from './landmark-error'
 import type { LandmarkId, Side } from './landmarks'
 import type { Facing, MarkingBody } from './marking'
-import { cameraRoll, LARGE_ROLL } from './plumb-line'
+import { type CameraRoll, cameraRoll, LARGE_ROLL } from './plumb-line'
 import type { WarningCode } from './reading'
 import { LARGEST_SCALE_SD, measureScale, type MeasuredScale } from './scale'
 
@@ -20,7 +20,7 @@ export interface PosePoint {
 /** A body with the conventions of MEASUREMENTS section 1 applied once: checked, upright, signs known. */
 export interface Pose {
   readonly points: ReadonlyMap<LandmarkId, PosePoint>
-  readonly roll: ReturnType<typeof cameraRoll>
+  readonly roll: CameraRoll
   readonly scale: MeasuredScale | null
   /** `s`, or null when neither the person nor the foot says where the body faces. */
   readonly facing: AxisSign | null
@@ -91,6 +91,14 @@ function sagittalWarnings(body: MarkingBody, facing: AxisSign | null, foot: Axis
   return warnings
 }
 
+function setUpWarnings(roll: CameraRoll, scale: MeasuredScale | null): WarningCode[] {
+  const warnings: WarningCode[] = []
+  if (roll.source === 'assumed') warnings.push('no-plumb-line')
+  if (Math.abs(roll.angle) > toRadians(LARGE_ROLL)) warnings.push('large-roll')
+  if (scale && scale.sdPx > LARGEST_SCALE_SD * scale.lengthPx) warnings.push('scale-too-short')
+  return warnings
+}
+
 function swappedLandmarks(points: Points, viewSign: AxisSign): ReadonlySet<LandmarkId> {
   const swapped = PAIRS.filter(([leftId, rightId]) => {
     const left = points.get(leftId)
@@ -119,10 +127,18 @@ export function poseOf(body: MarkingBody, repeatability: Repeatability): Pose {
   const facing = isSagittal ? facingOf(body, foot) : null
   const viewSign = frontalSign(body)
   const swapped = isSagittal ? NONE : swappedLandmarks(points, viewSign)
-  const warnings: WarningCode[] = isSagittal ? sagittalWarnings(body, facing, foot) : []
-  if (swapped.size > 0) warnings.push('left-right-swapped')
-  if (roll.source === 'assumed') warnings.push('no-plumb-line')
-  if (Math.abs(roll.angle) > toRadians(LARGE_ROLL)) warnings.push('large-roll')
-  if (scale && scale.sdPx > LARGEST_SCALE_SD * scale.lengthPx) warnings.push('scale-too-short')
-  return { points, roll, scale, facing, viewSign, nearSide: isSagittal ? body.side ?? null : null, swapped, warnings }
+  return {
+    points,
+    roll,
+    scale,
+    facing,
+    viewSign,
+    nearSide: isSagittal ? body.side ?? null : null,
+    swapped,
+    warnings: [
+      ...(isSagittal ? sagittalWarnings(body, facing, foot) : []),
+      ...(swapped.size > 0 ? ['left-right-swapped' as const] : []),
+      ...setUpWarnings(roll, scale),
+    ],
+  }
 }

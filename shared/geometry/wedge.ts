@@ -66,6 +66,19 @@ function angleReading(readings: readonly Reading[], measure: string): Reading | 
   return readings.find(reading => reading.measure === measure && reading.unit === 'deg') ?? null
 }
 
+function drawLine(line: MeasureLine, body: MarkingBody, reading: Reading | null): SegmentLine | null {
+  const from = meanPoint(line.from, body)
+  const to = meanPoint(line.to, body)
+  if (!from || !to) return null
+  return {
+    measure: reading?.measure ?? null,
+    segment: line.segment,
+    from,
+    to,
+    wedge: reading ? errorWedge(from, to, degrees(reading.sd)) : null,
+  }
+}
+
 /**
  * The segment lines that the marked landmarks allow, each once, with the wedge of the reading whose angle it is. A line that
  * belongs to a joint only (the two thighs of the frontal view) carries no wedge.
@@ -73,22 +86,12 @@ function angleReading(readings: readonly Reading[], measure: string): Reading | 
  */
 export function segmentLines(body: MarkingBody, readings: readonly Reading[]): readonly SegmentLine[] {
   const lines = new Map<string, SegmentLine>()
-  for (const { definition, recipes } of MEASURE_PLANS[body.view]) {
-    for (const recipe of recipes.filter(item => item.unit === 'deg')) {
-      const reading = recipe.lines.length === 1 ? angleReading(readings, definition.id) : null
-      for (const line of recipe.lines) {
-        const from = meanPoint(line.from, body)
-        const to = meanPoint(line.to, body)
-        const key = keyOf(line)
-        if (!from || !to || (lines.has(key) && !reading)) continue
-        lines.set(key, {
-          measure: reading ? definition.id : null,
-          segment: line.segment,
-          from,
-          to,
-          wedge: reading ? errorWedge(from, to, degrees(reading.sd)) : null,
-        })
-      }
+  const recipes = MEASURE_PLANS[body.view].flatMap(plan => plan.recipes.map(recipe => ({ id: plan.definition.id, recipe })))
+  for (const { id, recipe } of recipes.filter(item => item.recipe.unit === 'deg')) {
+    const reading = recipe.lines.length === 1 ? angleReading(readings, id) : null
+    for (const line of recipe.lines) {
+      const drawn = drawLine(line, body, reading)
+      if (drawn && (drawn.wedge || !lines.has(keyOf(line)))) lines.set(keyOf(line), drawn)
     }
   }
   return [...lines.values()]

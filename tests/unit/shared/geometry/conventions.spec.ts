@@ -3,7 +3,7 @@ import { GeometryError } from '#shared/geometry/geometry-error'
 import type { MarkingBody } from '#shared/geometry/marking'
 import { measureMarking } from '#shared/geometry/measure-marking'
 import { nearSide } from '#shared/geometry/pose'
-import { frontal, FRONTAL_PAIRS, marks, plumbLine, reading, sagittal, SAGITTAL_PAIRS, valueOf } from './marking-bodies'
+import { frontal, FRONTAL_PAIRS, marks, plumbLine, reading, sagittal, valueOf } from './marking-bodies'
 
 const TRUNK = { greaterTrochanter: [510, 520], acromion: [500, 260] } as const
 

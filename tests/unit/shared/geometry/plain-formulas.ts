@@ -102,13 +102,13 @@ export function plainFrontal(body: PlainBody, pelvis: 'asis' | 'psis'): Record<s
   const [xAL, yAL] = at('acromionLeft')
   const [xAR, yAR] = at('acromionRight')
   return {
-    'shoulderTilt': tilt('acromion'),
-    'pelvicTilt': tilt(pelvis),
-    'headTilt': tilt('tragus'),
-    'trunkLean': Math.atan2(m * (xTop - xLow), -(yTop - yLow)) * DEG,
-    'trunkOnPelvis': tilt('acromion') - tilt(pelvis),
-    'midlineShift': m * (over[0] - (xL + xR) / 2) / (Math.abs(xL - xR) / 2),
-    'stanceWidthRatio': Math.hypot(xL - xR, yL - yR) / Math.hypot(xAL - xAR, yAL - yAR),
+    shoulderTilt: tilt('acromion'),
+    pelvicTilt: tilt(pelvis),
+    headTilt: tilt('tragus'),
+    trunkLean: Math.atan2(m * (xTop - xLow), -(yTop - yLow)) * DEG,
+    trunkOnPelvis: tilt('acromion') - tilt(pelvis),
+    midlineShift: m * (over[0] - (xL + xR) / 2) / (Math.abs(xL - xR) / 2),
+    stanceWidthRatio: Math.hypot(xL - xR, yL - yR) / Math.hypot(xAL - xAR, yAL - yAR),
     ...(pelvis === 'asis'
       ? { 'frontalKneeAngle.left': frontalKnee(at, 'Left', m), 'frontalKneeAngle.right': frontalKnee(at, 'Right', m) }
       : {}),
