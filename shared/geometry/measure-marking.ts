@@ -2,7 +2,7 @@ import type { Repeatability } from './landmark-error'
 import type { MarkingBody } from './marking'
 import { chooseRecipe, explainMissing, MEASURE_PLANS, type MeasurePlan, withhold } from './measure-plan'
 import { type Roll, rollInDegrees } from './plumb-line'
-import { poseOf } from './pose'
+import { type Pose, poseOf } from './pose'
 import type { Reading, WarningCode, WithheldReading } from './reading'
 import type { MeasuredScale } from './scale'
 import { frameOf, type Judging, takeReading } from './take-reading'
@@ -36,15 +36,16 @@ function judgingOf(plan: MeasurePlan, options: MeasureOptions): Judging {
   }
 }
 
+interface PoseReadings {
+  readonly readings: readonly Reading[]
+  readonly withheld: readonly WithheldReading[]
+}
+
 /**
- * Computes every reading that a marking allows, with its error band, target status and warnings. Missing landmarks give fewer
- * readings, never a wrong one. Pure: the browser and the server get the same numbers.
- * @param body landmarks in pixels of the upright review copy, x right, y down
- * @returns readings in table order; angles in degrees in (−180, 180], lengths in millimetres, ratios plain or in percent
- * @throws GeometryError with a code and the path of the landmark or field at fault
+ * The readings of a pose that is already checked and upright.
+ * @throws GeometryError `facing-required` when a formula needs to know where the person faces and nothing says so.
  */
-export function measureMarking(body: MarkingBody, options: MeasureOptions = {}): MeasuredMarking {
-  const pose = poseOf(body, options.repeatability ?? {})
+export function readPose(pose: Pose, body: MarkingBody, options: MeasureOptions): PoseReadings {
   const frame = frameOf(pose)
   const readings: Reading[] = []
   const gaps: WithheldReading[] = []
@@ -62,5 +63,18 @@ export function measureMarking(body: MarkingBody, options: MeasureOptions = {}):
     if (reading) readings.push(reading)
     else gaps.push(withhold(plan, 'degenerate'))
   }
-  return { readings, withheld: gaps, warnings: pose.warnings, roll: rollInDegrees(pose.roll), scale: pose.scale }
+  return { readings, withheld: gaps }
+}
+
+/**
+ * Computes every reading that a marking allows, with its error band, target status and warnings. Missing landmarks give fewer
+ * readings, never a wrong one. Pure: the browser and the server get the same numbers.
+ * @param body landmarks in pixels of the upright review copy, x right, y down
+ * @returns readings in table order; angles in degrees in (−180, 180], lengths in millimetres, ratios plain or in percent
+ * @throws GeometryError with a code and the path of the landmark or field at fault
+ */
+export function measureMarking(body: MarkingBody, options: MeasureOptions = {}): MeasuredMarking {
+  const pose = poseOf(body, options.repeatability ?? {})
+  const { readings, withheld } = readPose(pose, body, options)
+  return { readings, withheld, warnings: pose.warnings, roll: rollInDegrees(pose.roll), scale: pose.scale }
 }

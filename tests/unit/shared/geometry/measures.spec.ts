@@ -1,10 +1,10 @@
-import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
 import type { MarkingBody } from '#shared/geometry/marking'
 import { measureMarking } from '#shared/geometry/measure-marking'
 import { TURNED_BY_THREE, WORKED_SAGITTAL, WORKED_SAGITTAL_READINGS } from '../../../reference/worked-values'
 import { WINTER_FRAMES } from '../../../reference/winter-frames'
 import { frontal, mirroredSagittal, plumbLine, reading, sagittal, turnedClockwise, valueOf } from './marking-bodies'
+import { referenceFile } from './reference-file'
 
 interface IndependentCase {
   readonly body: MarkingBody
@@ -13,9 +13,7 @@ interface IndependentCase {
 }
 
 // Source: an independent writing of the definitions in Python, tests/reference/independent_bodies.py.
-const INDEPENDENT: readonly IndependentCase[] = JSON.parse(
-  readFileSync(new URL('../../../reference/independent-bodies.json', import.meta.url), 'utf8'),
-)
+const INDEPENDENT = referenceFile<readonly IndependentCase[]>('independent-bodies.json')
 
 describe('worked examples', () => {
   it.each(Object.entries(WORKED_SAGITTAL_READINGS))('%s reads %f', (measure, value) => {

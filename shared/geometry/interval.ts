@@ -1,0 +1,5 @@
+/** A confidence interval. */
+export interface Interval {
+  readonly low: number
+  readonly high: number
+}
