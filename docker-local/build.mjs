@@ -8,6 +8,8 @@ import { takeLock, withLock } from './locks.mjs'
 import { BUILDS } from './npm-packages.mjs'
 import { hashSources } from './source-hash.mjs'
 
+const BUILD_LOCK = join(BUILDS, 'build.lock')
+const NUXT = join(PROJECT, 'node_modules/nuxt/bin/nuxt.mjs')
 const MARKER = 'complete.json'
 /** A build younger than this may be about to be served by somebody who took no lock. */
 const KEEP_MS = 60 * 60 * 1000
@@ -18,7 +20,7 @@ const KEEP_MS = 60 * 60 * 1000
  */
 export async function ensureBuild() {
   mkdirSync(join(BUILDS, 'logs'), { recursive: true })
-  return withLock(join(BUILDS, 'build.lock'), { onWait: () => say('  waiting for another build to finish') }, async () => {
+  return withLock(BUILD_LOCK, { onWait: sayWaiting }, async () => {
     const hash = hashSources(PROJECT)
     const existing = join(BUILDS, hash)
     const build = isComplete(existing) ? existing : await makeBuild(hash)
@@ -28,6 +30,23 @@ export async function ensureBuild() {
     await deleteOldBuilds(build)
     return build
   })
+}
+
+/**
+ * Writes Nuxt's types anew. Under the build lock, because the folder is empty for a moment and a build reads it.
+ * @returns {Promise<void>}
+ */
+export async function prepareTypes() {
+  mkdirSync(join(BUILDS, 'logs'), { recursive: true })
+  await withLock(BUILD_LOCK, { onWait: sayWaiting }, runPrepare)
+}
+
+function sayWaiting() {
+  say('  waiting for another build to finish')
+}
+
+function runPrepare() {
+  return run(process.execPath, [NUXT, 'prepare'], { log: join(BUILDS, 'logs', 'prepare.log'), fresh: true, cwd: PROJECT, what: 'preparing Nuxt\'s types' })
 }
 
 /** @param {string} build */
@@ -49,12 +68,9 @@ async function makeBuild(hash) {
   const fresh = join(BUILDS, `${hash}.tmp`)
   rmSync(fresh, { recursive: true, force: true })
   const output = join(fresh, 'output')
-  const nuxt = join(PROJECT, 'node_modules/nuxt/bin/nuxt.mjs')
   // tsconfig.json refers to files that Nuxt writes, and the build stops where one is missing, as in a fresh clone.
-  if (!existsSync(join(PROJECT, '.nuxt/tsconfig.app.json'))) {
-    await run(process.execPath, [nuxt, 'prepare'], { log: join(BUILDS, 'logs', 'prepare.log'), fresh: true, cwd: PROJECT, what: 'preparing the build' })
-  }
-  await run(process.execPath, [nuxt, 'build'], {
+  if (!existsSync(join(PROJECT, '.nuxt/tsconfig.app.json'))) await runPrepare()
+  await run(process.execPath, [NUXT, 'build'], {
     log: join(BUILDS, 'logs', 'build.log'), fresh: true, cwd: PROJECT, what: 'the build',
     env: cleanEnvironment({ NODE_ENV: 'production', STANDMARK_BUILD_DIR: join(fresh, 'nuxt'), STANDMARK_OUTPUT_DIR: output }),
   })

@@ -45,9 +45,6 @@ export function cleanEnvironment(settings = {}) {
     const value = process.env[name]
     if (value !== undefined) environment[name] = value
   }
-  for (const [name, value] of Object.entries(process.env)) {
-    if (/^npm_config_/i.test(name) && value !== undefined) environment[name] = value
-  }
   return { ...environment, ...settings }
 }
 
@@ -76,12 +73,18 @@ export async function endCommands() {
 }
 
 /**
- * Runs a program to its end, its output going to a log file.
+ * @typedef {{
+ *   log: string | null, fresh?: boolean, env?: Record<string, string>, cwd?: string, what: string, untouchable?: boolean, minutes?: number,
+ * }} RunOptions
+ * `log`: the file that takes the output, null to show it; `what`: said when it fails; `untouchable`: a stop lets it finish;
+ * `minutes`: after which it is ended
+ */
+
+/**
+ * Runs a program to its end.
  * @param {string} program
  * @param {readonly string[]} commandArguments
- * @param {{
- *   log: string, fresh?: boolean, env?: Record<string, string>, cwd?: string, what: string, untouchable?: boolean,
- * }} options `what`: said when it fails; `untouchable`: a stop lets it finish
+ * @param {RunOptions} options
  * @returns {Promise<void>}
  * @throws {StartError} when it ends with another code than 0, with the last lines of the log
  */
@@ -89,7 +92,7 @@ export async function run(program, commandArguments, options) {
   const code = await runForCode(program, commandArguments, options)
   if (code !== 0) {
     const how = typeof code === 'number' ? `code ${code}` : code
-    throw new StartError(`${options.what} failed (${program} ended with ${how})`, { details: lastLines(options.log) })
+    throw new StartError(`${options.what} failed (${program} ended with ${how})`, { details: options.log === null ? '' : lastLines(options.log) })
   }
 }
 
@@ -97,7 +100,7 @@ export async function run(program, commandArguments, options) {
  * Like `run`, but tells how the program ended instead of throwing.
  * @param {string} program
  * @param {readonly string[]} commandArguments
- * @param {{ log: string, fresh?: boolean, env?: Record<string, string>, cwd?: string, what: string, untouchable?: boolean }} options
+ * @param {RunOptions} options
  * @returns {Promise<number | string>} the exit code, or the name of the signal that ended it
  */
 export async function runForCode(program, commandArguments, options) {
@@ -113,23 +116,26 @@ export async function runForCode(program, commandArguments, options) {
 /**
  * @param {string} program
  * @param {readonly string[]} commandArguments
- * @param {{ log: string, fresh?: boolean, env?: Record<string, string>, cwd?: string, what: string, untouchable?: boolean }} options
+ * @param {RunOptions} options
  * @returns {Promise<number | string>}
  */
 function runToEnd(program, commandArguments, options) {
   return new Promise((resolve, reject) => {
-    const log = openLog(options.log, { fresh: options.fresh ?? false })
+    const log = options.log === null ? null : openLog(options.log, { fresh: options.fresh ?? false })
     const child = spawn(program, commandArguments, {
-      cwd: options.cwd, env: options.env ?? cleanEnvironment(), detached: true, stdio: ['ignore', log, log],
+      cwd: options.cwd, env: options.env ?? cleanEnvironment(), detached: true, stdio: ['ignore', log ?? 'inherit', log ?? 'inherit'],
     })
-    closeSync(log)
+    if (log !== null) closeSync(log)
+    const limit = options.minutes === undefined ? undefined : setTimeout(() => endGroup(child.pid, 'SIGKILL'), options.minutes * 60_000)
     if (!options.untouchable) running.add(child)
     child.once('error', (error) => {
       running.delete(child)
+      clearTimeout(limit)
       reject(new StartError(`${options.what} failed: ${error.message}`, { cause: error }))
     })
     child.once('close', (code, signal) => {
       running.delete(child)
+      clearTimeout(limit)
       resolve(code ?? signal ?? 'an unknown end')
     })
   })

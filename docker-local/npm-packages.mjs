@@ -24,9 +24,17 @@ export async function ensureNpmPackages() {
     if (isInstalled()) return
     say('  npm ci')
     await run('npm', ['ci', '--no-audit', '--no-fund'], {
-      log: join(BUILDS, 'logs', 'npm-ci.log'), fresh: true, cwd: PROJECT, env: cleanEnvironment(), what: 'npm ci',
+      log: join(BUILDS, 'logs', 'npm-ci.log'), fresh: true, cwd: PROJECT, env: cleanEnvironment(npmSettings()), what: 'npm ci',
     })
   })
+}
+
+/** @returns {Record<string, string>} how the person has set up npm: its registry, proxy, certificates */
+function npmSettings() {
+  /** @type {Record<string, string>} */
+  const settings = {}
+  for (const [name, value] of Object.entries(process.env)) if (/^npm_config_/i.test(name) && value !== undefined) settings[name] = value
+  return settings
 }
 
 function isInstalled() {
