@@ -45,8 +45,9 @@ export function useMarkingParts({ clip, picture, table, stills: list }: MarkingB
   const preview = shallowRef<MarkingCommand | null>(null)
   const { marking, document, shown, isDraftKept } = useOpenMarking(computed(() => stills.current.value?.id ?? null), preview)
 
-  function run(command: MarkingCommand) {
-    if (marking.value) store.run(marking.value.stillId, command)
+  /** Does an act on the marking in sight; `null` is one that would change nothing. */
+  function run(command: MarkingCommand | null) {
+    if (marking.value && command) store.run(marking.value.stillId, command)
     guide.requested.value = null
   }
 

@@ -13,6 +13,8 @@ export function useMarkingControl(parts: MarkingParts) {
     ? tools.selected.value
     : guide.next.value?.id ?? null)
 
+  const isDirty = computed(() => marking.value !== null && store.isDirty(marking.value.stillId))
+
   const situation = computed<BenchSituation>(() => ({
     canUndo: marking.value !== null && canUndo(marking.value.history),
     canRedo: marking.value !== null && canRedo(marking.value.history),
@@ -22,17 +24,13 @@ export function useMarkingControl(parts: MarkingParts) {
     isMarkSelected: tools.selected.value !== null && document.value?.landmarks[tools.selected.value] !== undefined,
     hasTarget: subject.value !== null,
     isZoomed: view.isZoomed.value,
-    isDirty: marking.value !== null && store.isDirty(marking.value.stillId),
+    isDirty: isDirty.value,
+    canFinish: isDirty.value || marking.value?.base?.status === 'draft',
     isBusy: saving.isSaving.value || stills.isPicking.value,
   }))
 
   function onMarking(act: (stillId: string) => void) {
     if (marking.value) act(marking.value.stillId)
-  }
-
-  function removeMark() {
-    const command = document.value && tools.selected.value ? removeLandmark(document.value, tools.selected.value) : null
-    if (command) run(command)
   }
 
   function letGo() {
@@ -53,7 +51,7 @@ export function useMarkingControl(parts: MarkingParts) {
     fit: view.fit,
     chooseTool: tool => tools.choose(tools.toolId.value === tool ? 'landmark' : tool),
     nudge: (dx, dy) => { if (tools.selected.value) nudging.nudge(tools.selected.value, dx, dy) },
-    removeMark,
+    removeMark: () => run(document.value && tools.selected.value ? removeLandmark(document.value, tools.selected.value) : null),
     askNotVisible: () => { isAskingNotVisible.value = true },
     skip: () => { if (guide.next.value) guide.skip(guide.next.value.id) },
     letGo,
