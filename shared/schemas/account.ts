@@ -1,9 +1,9 @@
 import { z } from 'zod'
 import { ROLES } from '#shared/types/role'
-import { IdSchema, listOf, PageQuerySchema } from './common'
+import { IdSchema, lineText, listOf, PageQuerySchema } from './common'
 
 export const SignInInputSchema = z.strictObject({
-  email: z.string().trim().min(3).max(254),
+  email: lineText(254, 3),
   password: z.string().min(1).max(512),
 })
 export type SignInInput = z.infer<typeof SignInInputSchema>

@@ -13,9 +13,9 @@ export const DaySchema = z.iso.date()
 export const SideSchema = z.enum(['left', 'right'])
 export type Side = z.infer<typeof SideSchema>
 
-/** True when the text holds a control character other than tab and line break. */
+/** True when the text holds what no person types and the database cannot keep: control characters other than tab and line break, half of a surrogate pair. */
 function hasControlCharacter(text: string): boolean {
-  return [...text].some(character => character < ' ' ? !'\t\r\n'.includes(character) : character === '\u007f')
+  return /\p{Surrogate}/u.test(text) || [...text].some(character => character < ' ' ? !'\t\r\n'.includes(character) : character === '\u007f')
 }
 
 /** One line of text typed by a person: trimmed, no control characters. */

@@ -76,7 +76,7 @@ export type Chart = z.infer<typeof ChartSchema>
 
 export const PATIENT_SORTS = ['name', 'recordNumber', 'birthDate', 'createdAt', 'lastSessionAt'] as const
 export const PatientListQuerySchema = PageQuerySchema.extend({
-  search: z.string().trim().max(200).optional(),
+  search: lineText(200).optional(),
   sort: sortBy(PATIENT_SORTS).default('name'),
 })
 export type PatientListQuery = z.infer<typeof PatientListQuerySchema>

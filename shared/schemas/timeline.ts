@@ -1,10 +1,10 @@
 import { z } from 'zod'
 import { ASSISTANCE_LEVELS } from './bout'
-import { IdSchema, MomentSchema } from './common'
+import { IdSchema, lineText, MomentSchema } from './common'
 import { ReadingSchema } from './reading'
 
 export const TimelineQuerySchema = z.strictObject({
-  measure: z.string().max(60).optional(),
+  measure: lineText(60).optional(),
   from: MomentSchema.optional(),
   to: MomentSchema.optional(),
 })
