@@ -33,12 +33,13 @@ export async function listClipsThatWait(tx: Transaction, viewer: Viewer, limit: 
     )).orderBy(desc(clip.createdAt)).limit(limit)
 }
 
+/** The table's name is spelt out in the sub-queries: alone in a FROM its columns would be written bare, and inside mean the inner table's. */
 export async function listPeople(tx: Transaction, viewer: Viewer, limit: number) {
   return tx.select({
     patientId: patient.id,
     name: patient.name,
     weakerSide: patient.weakerSide,
-    longestBoutMs: sql<number | null>`(select (max(extract(epoch from b.ended_at - b.started_at)) * 1000)::int from ${bout} b where b.clinic_id = ${patient.clinicId} and b.patient_id = ${patient.id})`,
-    clipCount: sql<number>`(select count(*)::int from ${clip} c where c.clinic_id = ${patient.clinicId} and c.patient_id = ${patient.id} and c.status = 'ready')`,
+    longestBoutMs: sql<number | null>`(select round(max(extract(epoch from b.ended_at - b.started_at)) * 1000)::float8 from ${bout} b where b.clinic_id = ${patient}.clinic_id and b.patient_id = ${patient}.id)`,
+    clipCount: sql<number>`(select count(*)::int from ${clip} c where c.clinic_id = ${patient}.clinic_id and c.patient_id = ${patient}.id and c.status = 'ready')`,
   }).from(patient).where(visiblePatients(viewer, patient.id)).orderBy(asc(patient.name), asc(patient.id)).limit(limit)
 }

@@ -18,8 +18,8 @@ function likeText(text: string): string {
 const lastSessionAt = (tx: Transaction) => tx.select({ patientId: session.patientId, at: max(session.startedAt).as('last_at') })
   .from(session).groupBy(session.patientId).as('last_session')
 
-/** Longest finished bout of a patient, milliseconds. */
-const longestBoutMs = sql<number | null>`(select (max(extract(epoch from b.ended_at - b.started_at)) * 1000)::int from ${bout} b where b.clinic_id = ${patient.clinicId} and b.patient_id = ${patient.id} and b.ended_at is not null)`
+/** Longest finished bout of a patient, milliseconds. The table's name is spelt out: alone in a FROM its columns would be written bare, and inside mean the bout's. */
+const longestBoutMs = sql<number | null>`(select round(max(extract(epoch from b.ended_at - b.started_at)) * 1000)::float8 from ${bout} b where b.clinic_id = ${patient}.clinic_id and b.patient_id = ${patient}.id and b.ended_at is not null)`
 
 const SORTS: Record<string, SQL | AnyPgColumn> = {
   name: sql`lower(${patient.name})`,
