@@ -1,6 +1,6 @@
 import { strictInput } from './media-arguments'
 import { TICKS_PER_SECOND } from './media-survey'
-import type { ByteRange } from './storage'
+import type { ByteRange } from './storage-connection'
 
 /** What is known of a review copy's frames and bytes. */
 export interface FrameIndex { timesUs: readonly number[], keyFrames: readonly number[], keyOffsets: readonly number[], fileSize: number }

@@ -1,0 +1,21 @@
+import { createTransport, type Transporter } from 'nodemailer'
+
+export interface Mail { to: { name: string, address: string }, subject: string, text: string }
+
+/** Outgoing mail over SMTP. Addresses go in as objects, so that no header can be smuggled in with them. */
+export function createMailer(smtpUrl: string, from: string) {
+  const transport: Transporter = createTransport(smtpUrl, { from, disableFileAccess: true, disableUrlAccess: true })
+  return {
+    /** @throws when the server does not take the mail. */
+    async send(mail: Mail): Promise<void> {
+      await transport.sendMail({ ...mail, disableFileAccess: true, disableUrlAccess: true })
+    },
+    /** @returns whether the mail server answers. */
+    async isUp(): Promise<boolean> {
+      return transport.verify().then(() => true, () => false)
+    },
+    close: () => transport.close(),
+  }
+}
+
+export type Mailer = ReturnType<typeof createMailer>
