@@ -25,6 +25,8 @@ export interface ApiDefinition<Can extends Permission | 'public' | 'signed-in', 
   status?: 200 | 201 | 202
   /** Needs `If-Match` (428 without) and hands its version to the handler. */
   ifMatch?: boolean
+  /** The handler sets the status itself. */
+  ownStatus?: boolean
 }
 
 /** What a route says of itself; the published interface is made of it (openapi.ts). */
@@ -78,14 +80,14 @@ async function admit(event: H3Event, can: Permission | 'public' | 'signed-in'): 
   return actor
 }
 
-function answer(event: H3Event, response: z.ZodType | 'none' | 'stream', status: number, result: unknown): unknown {
+function answer(event: H3Event, response: z.ZodType | 'none' | 'stream', status: number | null, result: unknown): unknown {
   if (response === 'stream') return result
   if (response === 'none') {
     setResponseStatus(event, 204)
     return null
   }
   const body: unknown = response.parse(result)
-  setResponseStatus(event, status)
+  if (status !== null) setResponseStatus(event, status)
   if (body && typeof body === 'object' && 'version' in body && typeof body.version === 'number') setResponseHeader(event, 'ETag', `"${body.version}"`)
   return body
 }
@@ -110,7 +112,7 @@ export function defineApiHandler<
   definition: ApiDefinition<Can, Param, Query, Body, Response>,
   handle: (input: HandlerInput<Can, Param, Query, Body>) => Promise<unknown>,
 ): EventHandler & { apiDefinition: AnyApiDefinition } {
-  const { can, params, query, body, response, status = 200, ifMatch = false } = definition
+  const { can, params, query, body, response, status = 200, ifMatch = false, ownStatus = false } = definition
   const handler = defineEventHandler(async (event) => {
     try {
       const actor = await admit(event, can)
@@ -127,7 +129,7 @@ export function defineApiHandler<
       const result = actor && status === 201 && input
         ? await runOnce(event, actor, { route: `${event.method} ${event.path.split('?')[0]}`, status, bytes: input.bytes }, run)
         : await run()
-      return answer(event, response, status, result)
+      return answer(event, response, ownStatus ? null : status, result)
     } catch (error) {
       throw toApiError(event, withCleanState(error, response))
     }
