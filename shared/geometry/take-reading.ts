@@ -85,9 +85,10 @@ function warningsOf(plan: MeasurePlan, recipe: Recipe, pose: Pose, tooShort: boo
   return [...applying, ...own, ...short]
 }
 
-function statusOf(plan: MeasurePlan, judging: Judging, value: number, sd: number): TargetStatus | null {
-  if (!judging.zone || Math.abs(value) < plan.definition.judgedFrom) return null
-  return targetStatus(judging.zone, value, sd, judging.judgement)
+function statusOf(plan: MeasurePlan, recipe: Recipe, judging: Judging, value: number, sd: number): TargetStatus | null {
+  const { zone, judgement } = judging
+  if (!zone || (zone.unit && zone.unit !== recipe.unit) || Math.abs(value) < plan.definition.judgedFrom) return null
+  return targetStatus(zone, value, sd, judgement)
 }
 
 /**
@@ -108,7 +109,7 @@ export function takeReading(plan: MeasurePlan, recipe: Recipe, pose: Pose, frame
   const sd = isAngle ? toDegrees(radians(rawSd)) : rawSd
   if (!Number.isFinite(value) || !Number.isFinite(sd)) return null
   const side = plan.side ?? pose.nearSide
-  const status = statusOf(plan, judging, value, sd)
+  const status = statusOf(plan, recipe, judging, value, sd)
   return {
     measure: plan.definition.id,
     definitionVersion: plan.definition.definitionVersion,

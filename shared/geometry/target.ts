@@ -1,10 +1,12 @@
 import { errorFunction } from 'simple-statistics'
-import type { TargetStatus } from './reading'
+import type { TargetStatus, Unit } from './reading'
 
 /** Limits of a target in the unit of the reading; null leaves that end open. */
 export interface TargetZone {
   readonly low: number | null
   readonly high: number | null
+  /** For a measure that comes in more than one unit: readings in another one are not judged. */
+  readonly unit?: Unit
 }
 
 /** Probabilities from which a reading counts as within or outside. */

@@ -56,6 +56,14 @@ describe('target of a reading', () => {
     expect(reading(measureMarking(thigh), 'thighInclination')).not.toHaveProperty('targetStatus')
   })
 
+  it('in millimetres does not judge a reading in percent', () => {
+    const pairs = { acromion: [560, 260], greaterTrochanter: [510, 520], lateralEpicondyle: [516, 760], lateralMalleolus: [500, 980] } as const
+    const scale = { from: { x: 100, y: 100 }, to: { x: 100, y: 600 }, lengthMm: 1000 }
+    const targets = { 'plumbOffset.acromion': { low: 0, high: 40, unit: 'mm' } } as const
+    expect(reading(measureMarking(sagittal(pairs), { targets }), 'plumbOffset.acromion')).not.toHaveProperty('targetStatus')
+    expect(reading(measureMarking(sagittal(pairs, { scale }), { targets }), 'plumbOffset.acromion').targetStatus).toBe('outside')
+  })
+
   it('never judges a shoulder tilt under 5°', () => {
     const targets = { shoulderTilt: { low: -2, high: 2 } }
     const tilted = (degrees: number) => frontal({
