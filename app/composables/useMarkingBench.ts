@@ -39,7 +39,7 @@ export function useMarkingParts({ clip, picture, table, stills: list }: MarkingB
   const source = useFrameSource({ clipId: clip.id, table, width: picture.width, height: picture.height })
   const player = useFramePlayer(table, source)
   const record = useMarkingRecord(clip, list)
-  const saving = useMarkingSave(clip, record.conflict)
+  const saving = useMarkingSave(clip, record)
   const restingFrame = computed(() => player.isPlaying.value ? null : source.shown.value?.frame ?? null)
   const stills = useMarkingStills({ clip, stills: list, frame: restingFrame, openStill: record.openStill })
   const preview = shallowRef<MarkingCommand | null>(null)

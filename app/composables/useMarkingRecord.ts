@@ -12,7 +12,8 @@ const HISTORY_CAPACITY = 400
 
 export interface MarkingConflict { readonly stillId: string, readonly theirs: Marking }
 
-function versionOf(marking: Marking): SavedVersion {
+/** @returns what a saved version is known by. */
+export function versionOf(marking: Marking): SavedVersion {
   return { markingId: marking.id, version: marking.version, status: marking.status, savedAt: marking.savedAt, authorName: marking.author.name }
 }
 
@@ -28,6 +29,9 @@ export function useMarkingRecord(clip: Clip, stills: Ref<readonly ClipStill[]>) 
   const problem = shallowRef<ApiProblem | null>(null)
   const opening = ref<string | null>(null)
   const conflict = shallowRef<MarkingConflict | null>(null)
+  /** The question can be put off; saving asks it again. */
+  const isConflictOpen = ref(true)
+  watch(conflict, () => { isConflictOpen.value = true })
 
   async function inheritedDocument(): Promise<MarkingDocument> {
     const ids = stills.value.map(still => still.id)
@@ -65,11 +69,11 @@ export function useMarkingRecord(clip: Clip, stills: Ref<readonly ClipStill[]>) 
     }
   }
 
-  return { problem, opening, conflict, openStill }
+  return { problem, opening, conflict, isConflictOpen, openStill }
 }
 
 /** Saves markings as new versions; nothing that someone else saved is written over unseen. */
-export function useMarkingSave(clip: Clip, conflict: Ref<MarkingConflict | null>) {
+export function useMarkingSave(clip: Clip, { conflict, isConflictOpen }: Pick<ReturnType<typeof useMarkingRecord>, 'conflict' | 'isConflictOpen'>) {
   const api = useApi()
   const store = useMarkingStore()
   const draft = useMarkingDraft()
@@ -102,6 +106,10 @@ export function useMarkingSave(clip: Clip, conflict: Ref<MarkingConflict | null>
   async function save(stillId: string, status: 'draft' | 'final'): Promise<boolean> {
     const marking = store.markingOf(stillId)
     if (!marking || isSaving.value) return false
+    if (conflict.value?.stillId === stillId) {
+      isConflictOpen.value = true
+      return false
+    }
     isSaving.value = true
     problem.value = null
     try {

@@ -16,7 +16,10 @@ export interface BenchSituation {
   /** Whether a landmark is selected or next, so that it can be passed over or said to be not visible. */
   readonly hasTarget: boolean
   readonly isZoomed: boolean
+  /** Whether there are changes that the server does not have. */
   readonly isDirty: boolean
+  /** Whether there is something to finish: changes, or a version that was saved as a draft. */
+  readonly canFinish: boolean
   readonly isBusy: boolean
 }
 
@@ -118,7 +121,7 @@ function markActions(control: BenchControl): readonly BenchAction[] {
     action({ id: 'skip', shortcuts: ['k'], scope: 'marks', isEnabled: situation => situation.isMarking && situation.hasTarget, run: control.skip }),
     action({ id: 'remove', shortcuts: ['Delete', 'Backspace'], scope: 'marks', isEnabled: situation => situation.isMarking && situation.isMarkSelected, run: control.removeMark }),
     action({ id: 'let-go', shortcuts: ['Escape'], run: control.letGo }),
-    action({ id: 'save', shortcuts: ['Mod+S'], isEnabled: situation => situation.isMarking && !situation.isBusy, run: () => control.save('final') }),
+    action({ id: 'save', shortcuts: ['Mod+S'], isEnabled: situation => situation.canFinish && !situation.isBusy, run: () => control.save('final') }),
     action({ id: 'save-draft', isEnabled: situation => situation.isMarking && situation.isDirty && !situation.isBusy, run: () => control.save('draft') }),
   ]
 }

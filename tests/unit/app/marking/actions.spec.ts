@@ -9,7 +9,7 @@ function press(key: string, modifiers: Partial<Omit<KeyPress, 'key'>> = {}): Key
 }
 
 const SITUATION: BenchSituation = {
-  canUndo: true, canRedo: true, frame: 5, frameCount: 100, isMarking: true, isMarkSelected: true, hasTarget: true, isZoomed: true, isDirty: true, isBusy: false,
+  canUndo: true, canRedo: true, frame: 5, frameCount: 100, isMarking: true, isMarkSelected: true, hasTarget: true, isZoomed: true, isDirty: true, canFinish: true, isBusy: false,
 }
 
 function recorder() {
