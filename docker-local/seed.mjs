@@ -11,7 +11,6 @@ import pg from 'pg'
 import { StartError, complain, complainAbout, say } from './console.mjs'
 import { fixedId, isSeeded, putClinic, putPatientAccount, rememberSeeded } from './demo/accounts.mjs'
 import { signIn } from './demo/api-client.mjs'
-import { scenarioDay } from './demo/clinic-time.mjs'
 import { putChart } from './demo/put-chart.mjs'
 import { markWhenReady, uploadClips } from './demo/put-clips.mjs'
 import { CLINICS, PASSWORD } from './demo/scenario.mjs'
@@ -44,27 +43,27 @@ async function main() {
 async function seedClinic(client, baseUrl, clinic) {
   const began = Date.now()
   const seconds = () => ((Date.now() - began) / 1000).toFixed(1)
-  const since = await putClinic(client, clinic)
-  const context = await signInTherapists(baseUrl, clinic, since)
-  const charts = await Promise.all(clinic.patients.map(patient => putChart(context, patient)))
-  say(`${clinic.name}: ${charts.length} charts after ${seconds()} s`)
-  if (clinic.patientAccount) await putPatientAccount(client, clinic, clinic.patientAccount, chartOf(clinic, charts, clinic.patientAccount.patient))
+  const place = await putClinic(client, clinic)
+  const context = { ...place, ...await signInTherapists(baseUrl, clinic) }
   const waiting = []
-  for (const chart of charts) waiting.push(...await uploadClips(context, chart))
-  say(`${clinic.name}: ${waiting.length} clips uploaded after ${seconds()} s`)
+  const charts = await Promise.all(clinic.patients.map(async (patient) => {
+    const chart = await putChart(context, patient)
+    waiting.push(...await uploadClips(context, chart))
+    return chart
+  }))
+  if (clinic.patientAccount) await putPatientAccount(client, clinic, clinic.patientAccount, chartOf(clinic, charts, clinic.patientAccount.patient))
+  say(`${clinic.name}: ${charts.length} charts, ${waiting.length} clips uploaded after ${seconds()} s`)
   await markWhenReady(waiting, left => left % 5 === 0 && say(`${clinic.name}: ${left} clips to go after ${seconds()} s`))
   await rememberSeeded(client, clinic)
   say(`${clinic.name}: ready after ${seconds()} s`)
 }
 
-async function signInTherapists(baseUrl, clinic, since) {
+async function signInTherapists(baseUrl, clinic) {
   const therapists = clinic.members.filter(member => member.roles.includes('therapist'))
   const signedIn = await Promise.all(therapists.map(async member => [member.key, await signIn(baseUrl, member.email, PASSWORD)]))
   return {
     api: Object.fromEntries(signedIn),
     members: Object.fromEntries(clinic.members.map(member => [member.key, fixedId(member.key)])),
-    day: scenarioDay(clinic.timeZone, since),
-    timeZone: clinic.timeZone,
   }
 }
 

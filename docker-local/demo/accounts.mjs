@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto'
 import { hash } from '@node-rs/argon2'
+import { machineTimeZone } from './clinic-time.mjs'
 import { PASSWORD } from './scenario.mjs'
 
 /**
@@ -32,16 +33,16 @@ async function inClinic(client, clinicId, work) {
 
 /**
  * Puts a clinic and its members where they are not yet.
- * @returns when the clinic row was made: the scenario counts its days from there, also when seeding is taken up again later.
+ * @returns its time zone and when its row was made: the scenario counts its days from there, also when seeding is taken up again later.
  */
 export async function putClinic(client, clinic) {
   const clinicId = fixedId(clinic.key)
   const passwordHash = await hash(PASSWORD, ARGON2ID)
   return inClinic(client, clinicId, async () => {
-    await client.query('insert into clinic (id, name, time_zone, units) values ($1, $2, $3, $4) on conflict (id) do nothing', [clinicId, clinic.name, clinic.timeZone, clinic.units])
+    await client.query('insert into clinic (id, name, time_zone, units) values ($1, $2, $3, $4) on conflict (id) do nothing', [clinicId, clinic.name, clinic.timeZone === 'machine' ? machineTimeZone() : clinic.timeZone, clinic.units])
     for (const member of clinic.members) await putAccount(client, { clinicId, ...member, passwordHash })
-    const { rows } = await client.query('select created_at from clinic where id = $1', [clinicId])
-    return rows[0].created_at
+    const { rows } = await client.query('select created_at, time_zone from clinic where id = $1', [clinicId])
+    return { since: rows[0].created_at, timeZone: rows[0].time_zone }
   })
 }
 

@@ -16,15 +16,25 @@ export function momentIn(timeZone, day, time) {
   return new Date(wanted - offsetMinutes(timeZone, new Date(first)) * 60_000)
 }
 
-/** The calendar day in the zone, `days` before a moment. */
-export function dayIn(timeZone, moment, days = 0) {
-  return new Intl.DateTimeFormat('en-CA', { timeZone, year: 'numeric', month: '2-digit', day: '2-digit' }).format(new Date(moment.getTime() - days * DAY_MS))
+/** The calendar day in the zone at a moment. */
+export function dayIn(timeZone, moment) {
+  return new Intl.DateTimeFormat('en-CA', { timeZone, year: 'numeric', month: '2-digit', day: '2-digit' }).format(moment)
 }
 
-/** Day 0 of the scenario: the latest day whose visits (the last ends before 17:00) are over. */
-export function scenarioDay(timeZone, now) {
-  const today = dayIn(timeZone, now)
-  return momentIn(timeZone, today, '17:00') <= now ? today : dayIn(timeZone, now, 1)
+/** The zone of this machine. */
+export const machineTimeZone = () => Intl.DateTimeFormat().resolvedOptions().timeZone || 'UTC'
+
+/** Long enough for the longest visit of the scenario. */
+const VISIT_MS = 60 * 60_000
+
+/**
+ * When a visit of the scenario began. One of day 0 whose time has not come yet is moved up, so that nothing lies in the future.
+ * @param since the moment of the first seeding; its day is day 0.
+ */
+export function visitStart({ timeZone, since }, daysAgo, time) {
+  const planned = momentIn(timeZone, daysBefore(dayIn(timeZone, since), daysAgo), time)
+  const latest = new Date(Math.floor((since.getTime() - VISIT_MS) / 60_000) * 60_000)
+  return planned < latest ? planned : latest
 }
 
 /** `day` moved back by `days`. */

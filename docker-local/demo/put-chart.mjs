@@ -1,5 +1,5 @@
 import { seededRandom } from '../../tests/fixtures/figure/ink.mjs'
-import { birthDateFor, daysBefore, momentIn } from './clinic-time.mjs'
+import { birthDateFor, dayIn, daysBefore, visitStart } from './clinic-time.mjs'
 import { CHECKLIST } from './scenario.mjs'
 
 /**
@@ -9,7 +9,7 @@ import { CHECKLIST } from './scenario.mjs'
 
 const MINUTE = 60_000
 
-/** `context`: `api` by member key, `members` (ids by key), `day` (day 0) and `timeZone`. @returns the chart with its visits and their bouts. */
+/** `context`: `api` by member key, `members` (ids by key), `since` and `timeZone`. @returns the chart with its visits and their bouts. */
 export async function putChart(context, patient) {
   const author = context.api[patient.team[0]]
   const chart = await putPatient(author, context, patient)
@@ -20,7 +20,10 @@ export async function putChart(context, patient) {
   return { ...chart, visits }
 }
 
-async function putPatient(author, { day }, patient) {
+const dayZero = ({ timeZone, since }) => dayIn(timeZone, since)
+
+async function putPatient(author, context, patient) {
+  const day = dayZero(context)
   const { items } = await author.get(`/api/patients?search=${encodeURIComponent(patient.recordNumber)}`)
   const known = items.find(item => item.recordNumber === patient.recordNumber)
   if (known) return known
@@ -39,7 +42,8 @@ async function putTeam(author, { members }, patient, patientId) {
   }
 }
 
-async function putConsents(author, { day }, patient, patientId) {
+async function putConsents(author, context, patient, patientId) {
+  const day = dayZero(context)
   const { consents } = await author.get(`/api/patients/${patientId}`)
   for (const { kind, daysAgo, givenBy = patient.name, givenByRelation = 'self', note } of patient.consents) {
     if (!consents.some(consent => consent.kind === kind)) {
@@ -50,7 +54,7 @@ async function putConsents(author, { day }, patient, patientId) {
 
 async function putVisit(context, patient, chart, visit, index) {
   const author = context.api[visit.by]
-  const start = momentIn(context.timeZone, daysBefore(context.day, visit.daysAgo), patient.at)
+  const start = visitStart(context, visit.daysAgo, patient.at)
   const startedAt = start.toISOString()
   const { items } = await author.get(`/api/patients/${chart.id}/sessions?pageSize=200`)
   const session = items.find(item => item.startedAt === startedAt) ?? await author.post(`/api/patients/${chart.id}/sessions`, {

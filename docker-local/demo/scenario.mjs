@@ -1,5 +1,6 @@
 /**
- * The demo clinic: invented people and six weeks of their standing. Days count back from the day of seeding, times are the clinic's.
+ * The demo clinic: invented people and six weeks of their standing. Days count back from the day of seeding, times are the clinic's
+ * (`timeZone` 'machine': where the demo runs, so that its mornings are the viewer's).
  * One person improves clearly, one changes less than measurement error, one gets worse, one is nearly ready to walk, one has no clips yet.
  */
 
@@ -110,8 +111,8 @@ const ORLA = {
   team: ['maren'], at: '08:30', aids: [], vitals: [118, 72, 76, 98, 5],
   consents: [{ kind: 'recording', daysAgo: 5 }],
   visits: [
-    visit(5, 0, 'substantial', 2, [], { by: 'maren', notes: 'Sat on the edge of the bed for six minutes with two people.' }),
-    visit(1, 0, 'partial', 1, [], { by: 'maren', notes: 'First sitting balance without hands: twenty seconds. No stand today.' }),
+    visit(4, 0, 'substantial', 2, [], { by: 'maren', notes: 'Sat on the edge of the bed for six minutes with two people.' }),
+    visit(0, 0, 'partial', 1, [], { by: 'maren', notes: 'First sitting balance without hands: twenty seconds. No stand today.' }),
   ],
 }
 
@@ -124,7 +125,7 @@ const TILDA = {
 
 export const CLINICS = [
   {
-    key: 'alderbay', name: 'Alder Bay Rehabilitation', timeZone: 'America/Vancouver', units: 'metric',
+    key: 'alderbay', name: 'Alder Bay Rehabilitation', timeZone: 'machine', units: 'metric',
     members: [
       { key: 'maren', email: 'therapist@alderbay.example', name: 'Maren Duarte, PT', roles: ['therapist'] },
       { key: 'colm', email: 'therapist2@alderbay.example', name: 'Colm Asante, PT', roles: ['therapist'] },
