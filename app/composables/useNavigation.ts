@@ -6,6 +6,7 @@ const PLACES: readonly Place[] = [
   { key: 'today', to: '/', permission: 'home:read' },
   { key: 'patients', to: '/patients', permission: 'patient:read' },
   { key: 'sessions', to: '/sessions', permission: 'session:read' },
+  { key: 'measures', to: '/measures', permission: 'measure:compute' },
   { key: 'clinic', to: '/clinic', permission: 'audit:read' },
 ]
 
