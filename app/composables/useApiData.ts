@@ -19,18 +19,25 @@ export function useApiData<Answer>(path: MaybeRefOrGetter<string>, options: ApiD
     { watch: [query], lazy: options.isLazy ?? false, dedupe: 'cancel' },
   )
   const problem = computed(() => asyncData.error.value ? parseApiError(asyncData.error.value) : null)
-  if (options.isFatal) {
-    watch(problem, (now) => {
-      if (now && now.code !== 'not-signed-in') showError({ statusCode: now.status || 503, data: { code: now.code, requestId: now.requestId } })
-    }, { immediate: true })
+  const nuxtApp = useNuxtApp()
+  function refuse() {
+    const now = problem.value
+    if (!options.isFatal || !now || now.code === 'not-signed-in') return
+    nuxtApp.runWithContext(() => showError({ statusCode: now.status || 503, data: { code: now.code, requestId: now.requestId } }))
   }
+  // While rendering on the server watchers stand still: there the awaited answer is looked at.
+  watch(problem, refuse)
   const parts = {
     data: asyncData.data,
     problem,
     isPending: computed(() => asyncData.status.value === 'pending' || asyncData.status.value === 'idle'),
     refresh: () => asyncData.refresh(),
   }
-  return Object.assign(Promise.resolve(asyncData).then(() => parts), parts)
+  const ready = Promise.resolve(asyncData).then(() => {
+    refuse()
+    return parts
+  })
+  return Object.assign(ready, parts)
 }
 
 /** Drops what is not asked for, so that the address stays short. */
