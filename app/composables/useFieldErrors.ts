@@ -29,11 +29,13 @@ export function useFieldErrors() {
   return { fromSchema, fromServer }
 }
 
+const FORMAT_WORDS: Partial<Record<string, string>> = { date: 'date', datetime: 'time' }
+
 type Word = (code: string, limit?: number | bigint) => string
 
 const WORDS: Partial<Record<string, (issue: Issue, word: Word) => string>> = {
   invalid_type: (issue, word) => word(issue.code === 'invalid_type' && ['number', 'int'].includes(issue.expected) ? 'number' : 'required'),
-  invalid_format: (issue, word) => word(issue.code === 'invalid_format' && issue.format.startsWith('date') ? 'date' : 'invalid'),
+  invalid_format: (issue, word) => word((issue.code === 'invalid_format' && FORMAT_WORDS[issue.format]) || 'invalid'),
   invalid_value: (_issue, word) => word('choose'),
   too_small: (issue, word) => {
     if (issue.code !== 'too_small') return word('invalid')

@@ -20,7 +20,7 @@ export function useForm<Input, Answer>({ schema, toInput, send, codeFields = {} 
   const errors = ref<Record<string, string>>({})
   const problem = ref<ApiProblem | null>(null)
   const isBusy = ref(false)
-  let last = { content: '', key: '' }
+  const keyFor = useIdempotencyKey()
 
   function refuse(found: Record<string, string>, form: HTMLElement | null | undefined) {
     errors.value = found
@@ -34,11 +34,6 @@ export function useForm<Input, Answer>({ schema, toInput, send, codeFields = {} 
     const atFields = path ? { [path]: problemText(found) } : fromServer(found.issues)
     if (Object.keys(atFields).length > 0) refuse(atFields, form)
     problem.value = path ? null : found
-  }
-
-  function keyFor(content: string): string {
-    if (last.content !== content) last = { content, key: crypto.randomUUID() }
-    return last.key
   }
 
   /** @returns the server's answer, or undefined when something needs a look first. */
@@ -70,4 +65,13 @@ export function useForm<Input, Answer>({ schema, toInput, send, codeFields = {} 
   })
 
   return { errors, problem, notice, isBusy, submit }
+}
+
+/** The same content keeps its key, so that sending it again after a lost answer makes nothing twice. */
+function useIdempotencyKey() {
+  let last = { content: '', key: '' }
+  return (content: string): string => {
+    if (last.content !== content) last = { content, key: crypto.randomUUID() }
+    return last.key
+  }
 }

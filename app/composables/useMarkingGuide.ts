@@ -44,7 +44,7 @@ export function useMarkingGuide({ view, document, place, setPlace }: MarkingGuid
   }
 
   return {
-    order, all, next, then, progress, isPlumbLineNext, setAfter, requested, skip, ask,
+    order, all, place, next, then, progress, isPlumbLineNext, setAfter, requested, skip, ask,
     goOn: (upTo: GuideSet) => setPlace({ ...place.value, upTo }),
     completes: (id: string) => document.value ? completedBy(document.value, view, id) : [],
   }

@@ -16,25 +16,31 @@ export interface PatientFields {
   notes: string
 }
 
+const EMPTY: PatientFields = {
+  name: '', recordNumber: '', birthDate: '', weakerSide: '', height: '', mass: '', strokeOn: '', precautions: [],
+  lateropulsion: '', neglectSide: '', visualFieldLossSide: '', hasAphasia: false, notes: '',
+}
+
 /** What the fields of the patient form hold, and how that becomes the body of a request. */
 export function usePatientFields() {
   const format = useClinicFormat()
 
   function fieldsOf(patient: Patient | null): PatientFields {
+    if (!patient) return { ...EMPTY, precautions: [] }
     return {
-      name: patient?.name ?? '',
-      recordNumber: patient?.recordNumber ?? '',
-      birthDate: patient?.birthDate ?? '',
-      weakerSide: patient?.weakerSide ?? '',
-      height: typeof patient?.heightCm === 'number' ? format.lengthText(patient.heightCm) : '',
-      mass: typeof patient?.massKg === 'number' ? format.massText(patient.massKg) : '',
-      strokeOn: patient?.strokeOn ?? '',
-      precautions: (patient?.precautions ?? []).map(({ kind, note }) => ({ kind, note: note ?? '' })),
-      lateropulsion: patient?.lateropulsion ?? '',
-      neglectSide: patient?.neglectSide ?? '',
-      visualFieldLossSide: patient?.visualFieldLossSide ?? '',
-      hasAphasia: patient?.hasAphasia ?? false,
-      notes: patient?.notes ?? '',
+      name: patient.name,
+      recordNumber: patient.recordNumber,
+      birthDate: patient.birthDate,
+      weakerSide: patient.weakerSide,
+      height: patient.heightCm === null ? '' : format.lengthText(patient.heightCm),
+      mass: patient.massKg === null ? '' : format.massText(patient.massKg),
+      strokeOn: patient.strokeOn ?? '',
+      precautions: patient.precautions.map(({ kind, note }) => ({ kind, note: note ?? '' })),
+      lateropulsion: patient.lateropulsion ?? '',
+      neglectSide: patient.neglectSide ?? '',
+      visualFieldLossSide: patient.visualFieldLossSide ?? '',
+      hasAphasia: patient.hasAphasia,
+      notes: patient.notes ?? '',
     }
   }
 
