@@ -55,4 +55,4 @@ export const MarkingSchema = z.object({
 export type Marking = z.infer<typeof MarkingSchema>
 export const MarkingsSchema = z.object({ items: z.array(MarkingSchema) })
 /** `GET /api/markings/:id`: an earlier version by `version`. */
-export const MarkingVersionQuerySchema = z.strictObject({ version: z.coerce.number().int().min(1).optional() })
+export const MarkingVersionQuerySchema = z.strictObject({ version: z.coerce.number().int().min(1).max(2_147_483_647).optional() })
