@@ -1,4 +1,5 @@
 import { createTransport, type Transporter } from 'nodemailer'
+import { settings } from './settings'
 
 export interface Mail { to: { name: string, address: string }, subject: string, text: string }
 
@@ -19,3 +20,13 @@ export function createMailer(smtpUrl: string, from: string) {
 }
 
 export type Mailer = ReturnType<typeof createMailer>
+
+let current: Mailer | undefined
+
+/** The mail server that the settings name, or null where none is. */
+export function mailer(): Mailer | null {
+  const { smtpUrl, mailFrom } = settings()
+  if (!smtpUrl) return null
+  current ??= createMailer(smtpUrl, mailFrom)
+  return current
+}

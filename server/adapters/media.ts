@@ -68,11 +68,11 @@ function createReviewTools(run: Run) {
 
     /**
      * Makes the review copy of the folder's input.
-     * @param bounds where to stop; `expectedSeconds`, as the file declares its length, sets the time limit
+     * @param bounds where to stop; `expectedSeconds`, as the file declares its length, sets the time limit; `isCareful`: one thread
      * @throws MediaRefusal, MediaCrash
      */
-    async makeReview(folder: string, what: { video: VideoFacts, plan: ReviewPlan }, bounds: { seconds: number, frames: number, expectedSeconds: number }, watch: Watch): Promise<void> {
-      const args = reviewArguments(what.video, what.plan, { from: INPUT_NAME, to: REVIEW_NAME }, { ...bounds, threads: THREADS })
+    async makeReview(folder: string, what: { video: VideoFacts, plan: ReviewPlan }, bounds: { seconds: number, frames: number, expectedSeconds: number, isCareful: boolean }, watch: Watch): Promise<void> {
+      const args = reviewArguments(what.video, what.plan, { from: INPUT_NAME, to: REVIEW_NAME }, { ...bounds, threads: bounds.isCareful ? 1 : THREADS })
       await run({ program: 'ffmpeg', args, folder, limits: encodeLimits(bounds.expectedSeconds, THREADS), onLine: readProgress(watch.onProgress), ...(watch.signal ? { signal: watch.signal } : {}) })
     },
 

@@ -1,9 +1,9 @@
 import { logger } from '#server/adapters/logger'
 import { settings, SettingsError } from '#server/adapters/settings'
-import { closeDatabase, openDatabase } from '#server/database/client'
+import { openDatabase } from '#server/database/client'
 
 /** Start: settings first; a missing or unsafe one ends the process with one clear line. */
-export default defineNitroPlugin((nitroApp) => {
+export default defineNitroPlugin(() => {
   try {
     const { databaseUrl, secret } = settings()
     process.env.NUXT_SESSION_PASSWORD ??= secret
@@ -13,5 +13,4 @@ export default defineNitroPlugin((nitroApp) => {
     process.stderr.write(`Standmark does not start: ${error.message}\n`)
     process.exit(78)
   }
-  nitroApp.hooks.hook('close', closeDatabase)
 })

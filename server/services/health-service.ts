@@ -1,6 +1,6 @@
-import { createMailer, type Mailer } from '#server/adapters/mail'
+import { mailer } from '#server/adapters/mail'
 import { settings } from '#server/adapters/settings'
-import { createStorage, type Storage } from '#server/adapters/storage'
+import { storage } from '#server/adapters/storage'
 import { isDatabaseUp, withoutClinic } from '#server/database/client'
 import { areJobsTaken } from '#server/database/queries/health-queries'
 import type { Health } from '#shared/schemas/health'
@@ -12,17 +12,13 @@ const JOB_PATIENCE_SECONDS = 120
 /** The answer is open to everybody: asking often must not become a load on what is asked. */
 const KEPT_MS = 1_000
 
-let storage: Storage | undefined
-let mailer: Mailer | undefined
 let kept: { at: number, answer: Promise<Health> } | undefined
 
 const word = (isUp: boolean): Check => isUp ? 'up' : 'down'
 
 async function checkMail(): Promise<Check> {
-  const { smtpUrl, mailFrom } = settings()
-  if (!smtpUrl) return 'not-configured'
-  mailer ??= createMailer(smtpUrl, mailFrom)
-  return word(await mailer.isUp())
+  const server = mailer()
+  return server ? word(await server.isUp()) : 'not-configured'
 }
 
 async function checkQueue(): Promise<Check> {
@@ -30,8 +26,7 @@ async function checkQueue(): Promise<Check> {
 }
 
 async function askAll(): Promise<Health> {
-  storage ??= createStorage(settings().storage)
-  const [database, stored, queue, mail] = await Promise.all([isDatabaseUp().then(word), storage.isUp().then(word), checkQueue(), checkMail()])
+  const [database, stored, queue, mail] = await Promise.all([isDatabaseUp().then(word), storage().isUp().then(word), checkQueue(), checkMail()])
   const isDown = database === 'down' || stored === 'down'
   const isDegraded = queue === 'down' || mail === 'down'
   return { status: isDown ? 'down' : isDegraded ? 'degraded' : 'ok', mode: settings().mode, checks: { database, storage: stored, queue, mail } }

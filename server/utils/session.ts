@@ -64,6 +64,12 @@ export function readActor(event: H3Event): Promise<Actor | null> {
   return event.context.actor
 }
 
+/** @returns whether the session lives at this moment: an answer that takes long asks again. */
+export async function isSignedInStill(event: H3Event): Promise<boolean> {
+  const token = await readSessionToken(event)
+  return token !== null && await findActor(token, event.context.requestId) !== null
+}
+
 declare module '#auth-utils' {
   interface SecureSessionData { token: string }
 }
