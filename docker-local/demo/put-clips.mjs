@@ -97,7 +97,7 @@ async function markClip({ api, clipId, entry }) {
 export function markingOf(entry, frame, still) {
   const truth = TRUTH[entry.file].stills[frame]
   if (truth.width !== still.width || truth.height !== still.height) throw new Error(`the review copy of ${entry.file} is ${still.width}×${still.height}, it was drawn ${truth.width}×${truth.height}`)
-  const random = seededRandom([...entry.file].reduce((sum, letter) => sum * 31 + letter.charCodeAt(0), frame) % 2 ** 31)
+  const random = seededRandom([...entry.file].reduce((sum, letter) => Math.imul(sum, 31) + letter.charCodeAt(0), frame))
   const gaussian = () => Math.sqrt(-2 * Math.log(1 - random())) * Math.cos(2 * Math.PI * random())
   const clicked = (value, limit) => Math.min(limit, Math.max(0, Math.round((value + gaussian() * CLICK_NOISE_PX) * 10) / 10))
   const point = ({ x, y }) => ({ x: clicked(x, truth.width), y: clicked(y, truth.height) })
