@@ -10,6 +10,8 @@ declare module 'vue-router' {
 /** For comfort only, the server decides: nobody signed in is led to the sign-in page and back afterwards. */
 export default defineNuxtRouteMiddleware(async (to) => {
   const session = useSessionStore()
+  // The server has decided already for the page that the browser takes over, the error page among them.
+  if (import.meta.client && useNuxtApp().isHydrating) return
   if (!session.isLoaded) {
     try {
       await session.load()
