@@ -13,8 +13,10 @@ interface ApiDataOptions {
 export function useApiData<Answer>(path: MaybeRefOrGetter<string>, options: ApiDataOptions = {}) {
   const api = useApi()
   const query = computed(() => clean(toValue(options.query) ?? {}))
+  // A key of this component's own: the next page would else take over what the page before it read, though it may have changed it.
+  const id = useId()
   const asyncData = useAsyncData(
-    () => `api:${toValue(path)}`,
+    () => `api:${toValue(path)}:${id}`,
     (_app, { signal }) => api<Answer>(toValue(path), { query: query.value, signal }),
     { watch: [query], lazy: options.isLazy ?? false, dedupe: 'cancel' },
   )
