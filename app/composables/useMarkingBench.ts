@@ -13,6 +13,8 @@ export interface MarkingBenchOptions {
   readonly picture: Size
   readonly table: FrameTable
   readonly stills: Ref<readonly ClipStill[]>
+  /** Whether the bout of the clip logs support for body weight or arms. */
+  readonly isSupported: boolean
 }
 
 /** The marking of the still in sight, and the document as drawn: with the gesture that is going on. */
@@ -34,11 +36,11 @@ function useOpenMarking(stillId: Ref<string | null>, preview: Ref<MarkingCommand
 }
 
 /** Frames, still, marking, tools, guide and readings of one clip, put together. */
-export function useMarkingParts({ clip, picture, table, stills: list }: MarkingBenchOptions) {
+export function useMarkingParts({ clip, picture, table, stills: list, isSupported }: MarkingBenchOptions) {
   const store = useMarkingStore()
   const source = useFrameSource({ clipId: clip.id, table, width: picture.width, height: picture.height })
   const player = useFramePlayer(table, source)
-  const record = useMarkingRecord(clip, list)
+  const record = useMarkingRecord(clip, list, isSupported)
   const saving = useMarkingSave(clip, record)
   const restingFrame = computed(() => player.isPlaying.value ? null : source.shown.value?.frame ?? null)
   const stills = useMarkingStills({ clip, stills: list, frame: restingFrame, openStill: record.openStill })

@@ -22,7 +22,7 @@ function newest(markings: readonly Marking[]): Marking | null {
 }
 
 /** Reads the markings of a clip's stills. A new still begins with the plumb line, scale and circumstances of the clip's last marking. */
-export function useMarkingRecord(clip: Clip, stills: Ref<readonly ClipStill[]>) {
+export function useMarkingRecord(clip: Clip, stills: Ref<readonly ClipStill[]>, isSupported: boolean) {
   const api = useApi()
   const store = useMarkingStore()
   const draft = useMarkingDraft()
@@ -40,7 +40,7 @@ export function useMarkingRecord(clip: Clip, stills: Ref<readonly ClipStill[]>) 
     const last = stills.value.flatMap(still => still.markings).toSorted((a, b) => b.savedAt.localeCompare(a.savedAt))[0]
     if (last) return inheritSetting(fromMarkingFields((await api<Marking>(`/api/markings/${last.id}`)).body))
     // Facing picture right shows the person's right side, unless the file is mirrored; the foot or the person may correct it.
-    return { ...EMPTY_DOCUMENT, side: clip.side, facing: clip.side }
+    return { ...EMPTY_DOCUMENT, side: clip.side, facing: clip.side, supported: isSupported }
   }
 
   function withDraft(stillId: string, saved: Marking | null, savedDocument: MarkingDocument): OpenMarking {

@@ -49,6 +49,11 @@ describe('landmark tool', () => {
     expect(played.selected).toBe('acromion')
   })
 
+  it('places the target close beside a marked landmark', () => {
+    const played = gesture('landmark', { document: marked, target: 'canthus', reach: 12 }).press(500, 253).release(500, 253)
+    expect(played.document.landmarks).toEqual({ ...marked.landmarks, canthus: { x: 500, y: 253 } })
+  })
+
   it('only selects on a press without a move', () => {
     const played = gesture('landmark', { document: marked }).press(503, 260).release(503, 260)
     expect(played.commands).toEqual([])
