@@ -96,6 +96,8 @@ export function readComplaint(stderr: string): Unreadable {
   if (/exceeds specified max pixel|Picture size \d+x\d+ is invalid/.test(stderr)) return 'picture-too-large'
   if (/moov atom not found/.test(stderr)) return 'recording-incomplete'
   if (/Format not on whitelist/.test(stderr)) return 'not-a-video'
+  // Before the codecs: the decoder of a sound track is not allowed either, and is complained of without harm.
+  if (/corrupt (input packet|decoded frame)|partial file|Error while decoding|Invalid NAL unit/.test(stderr)) return 'damaged'
   if (/Codec .* not on whitelist|Unsupported codec|Decoder .* not found|unknown codec/i.test(stderr)) return 'codec-unsupported'
   return 'damaged'
 }

@@ -41,6 +41,7 @@ describe('readComplaint', () => {
     ['[prores @ 0x1] Codec (prores) not on whitelist \'h264\'', 'codec-unsupported'],
     ['[concat @ 0x1] Format not on whitelist \'mov,matroska\'', 'not-a-video'],
     ['file:in: corrupt decoded frame in stream 0', 'damaged'],
+    ['[aac @ 0x1] Codec (aac) not on whitelist \'h264\'\n[mov,mp4 @ 0x2] stream 1, offset 0x840af: partial file\nfile:in: corrupt input packet in stream 0', 'damaged'],
   ])('reads «%s» as %s', (stderr, reason) => {
     expect(readComplaint(stderr)).toBe(reason)
   })
