@@ -97,7 +97,7 @@ export function readComplaint(stderr: string): Unreadable {
   if (/moov atom not found/.test(stderr)) return 'recording-incomplete'
   if (/Format not on whitelist/.test(stderr)) return 'not-a-video'
   // Before the codecs: the decoder of a sound track is not allowed either, and is complained of without harm.
-  if (/corrupt (input packet|decoded frame)|partial file|Error while decoding|Invalid NAL unit/.test(stderr)) return 'damaged'
+  if (/corrupt|partial file|error while decoding|invalid NAL unit/i.test(stderr)) return 'damaged'
   if (/Codec .* not on whitelist|Unsupported codec|Decoder .* not found|unknown codec/i.test(stderr)) return 'codec-unsupported'
   return 'damaged'
 }

@@ -42,6 +42,7 @@ describe('readComplaint', () => {
     ['[concat @ 0x1] Format not on whitelist \'mov,matroska\'', 'not-a-video'],
     ['file:in: corrupt decoded frame in stream 0', 'damaged'],
     ['[aac @ 0x1] Codec (aac) not on whitelist \'h264\'\n[mov,mp4 @ 0x2] stream 1, offset 0x840af: partial file\nfile:in: corrupt input packet in stream 0', 'damaged'],
+    ['[aac @ 0x1] Codec (aac) not on whitelist \'h264\'\n[h264 @ 0x2] error while decoding MB 18 22', 'damaged'],
   ])('reads «%s» as %s', (stderr, reason) => {
     expect(readComplaint(stderr)).toBe(reason)
   })
