@@ -8,11 +8,6 @@ export function useMarkingControl(parts: MarkingParts) {
   const { source, player, stills, saving, marking, run, view, tools, nudging, guide, document, isAskingNotVisible } = parts
   const store = useMarkingStore()
 
-  /** The landmark that an act is about: the selected one, else the next. */
-  const subject = computed(() => tools.selected.value && guide.all.some(landmark => landmark.id === tools.selected.value)
-    ? tools.selected.value
-    : guide.next.value?.id ?? null)
-
   const isDirty = computed(() => marking.value !== null && store.isDirty(marking.value.stillId))
 
   const situation = computed<BenchSituation>(() => ({
@@ -22,7 +17,7 @@ export function useMarkingControl(parts: MarkingParts) {
     frameCount: player.lastFrame + 1,
     isMarking: marking.value !== null,
     isMarkSelected: tools.selected.value !== null && document.value?.landmarks[tools.selected.value] !== undefined,
-    hasTarget: subject.value !== null,
+    hasTarget: guide.next.value !== null,
     isZoomed: view.isZoomed.value,
     isDirty: isDirty.value,
     canFinish: isDirty.value || marking.value?.base?.status === 'draft',
@@ -57,5 +52,5 @@ export function useMarkingControl(parts: MarkingParts) {
     letGo,
     save: status => onMarking(stillId => void saving.save(stillId, status)),
   }
-  return { situation, subject, actions: createBenchActions(control) }
+  return { situation, actions: createBenchActions(control) }
 }

@@ -1,6 +1,6 @@
 import type { View } from '#shared/geometry/landmarks'
 import type { MarkingDocument } from '~/marking/document'
-import { completedBy, guideOrder, guideProgress, landmarkAfter, nextLandmark } from '~/marking/guide'
+import { completedBy, guideOrder, guideProgress, landmarkAfter, nextLandmark, nextOpenSet } from '~/marking/guide'
 import type { GuidePlace, GuideSet } from '~/marking/guide'
 
 export interface MarkingGuideOptions {
@@ -13,7 +13,7 @@ export interface MarkingGuideOptions {
 /** The next landmark and how far one is. A landmark that was asked for by name comes before the guide's own next. */
 export function useMarkingGuide({ view, document, place, setPlace }: MarkingGuideOptions) {
   const order = guideOrder(view)
-  const all = [...order.core, ...order.more, ...order.equipment]
+  const all = [...order.core, ...order.more, ...order.unasked, ...order.equipment]
   const requested = ref<string | null>(null)
   const guided = computed(() => document.value && nextLandmark(document.value, order, place.value))
   const next = computed(() => all.find(landmark => landmark.id === requested.value) ?? guided.value)
@@ -25,11 +25,7 @@ export function useMarkingGuide({ view, document, place, setPlace }: MarkingGuid
     && progress.value?.isCoreDone === true
     && requested.value === null
     && !place.value.skipped.includes('plumb-line'))
-  const setAfter = computed<GuideSet | null>(() => {
-    if (guided.value) return null
-    if (place.value.upTo === 'core' && order.more.length > 0) return 'more'
-    return place.value.upTo !== 'equipment' && order.equipment.length > 0 ? 'equipment' : null
-  })
+  const setAfter = computed(() => document.value && !guided.value ? nextOpenSet(document.value, order, place.value.upTo) : null)
 
   function skip(id: string) {
     requested.value = null

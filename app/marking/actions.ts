@@ -13,7 +13,7 @@ export interface BenchSituation {
   readonly isMarking: boolean
   /** Whether the selected landmark has a point that can be moved. */
   readonly isMarkSelected: boolean
-  /** Whether a landmark is selected or next, so that it can be passed over or said to be not visible. */
+  /** Whether a landmark is next, so that it can be passed over or said to be not visible. */
   readonly hasTarget: boolean
   readonly isZoomed: boolean
   /** Whether there are changes that the server does not have. */

@@ -8,8 +8,11 @@ import type { MarkingDocument } from './document'
 export const GUIDE_SETS = ['core', 'more', 'equipment'] as const
 export type GuideSet = typeof GUIDE_SETS[number]
 
-/** The landmarks of a view by set: those that nearly every reading needs, the rest of the body, the support. */
-export type GuideOrder = Readonly<Record<GuideSet, readonly Landmark[]>>
+/**
+ * The landmarks of a view by set: those that nearly every reading needs, the rest of the body, the support.
+ * `unasked` are those that no measure needs: they can be marked from the list and are never asked for.
+ */
+export type GuideOrder = Readonly<Record<GuideSet | 'unasked', readonly Landmark[]>>
 
 /**
  * The guide asks for nothing that gives nothing: beyond the core set, only landmarks that a measure of this view needs.
@@ -17,8 +20,10 @@ export type GuideOrder = Readonly<Record<GuideSet, readonly Landmark[]>>
  */
 export function guideOrder(view: View): GuideOrder {
   const needed = new Set<string>(measuresOf(view).flatMap(measure => measure.recipes).flatMap(recipe => recipe.landmarks))
-  const offered = guidedLandmarks(view).filter(landmark => landmark.core || needed.has(landmark.id))
+  const isAsked = (landmark: Landmark) => landmark.core || needed.has(landmark.id)
+  const offered = guidedLandmarks(view).filter(isAsked)
   return {
+    unasked: guidedLandmarks(view).filter(landmark => !isAsked(landmark)),
     core: offered.filter(landmark => landmark.core),
     more: offered.filter(landmark => !landmark.core && !landmark.equipment),
     equipment: offered.filter(landmark => !landmark.core && landmark.equipment),
@@ -47,6 +52,12 @@ export function nextLandmark(document: MarkingDocument, order: GuideOrder, place
 export function landmarkAfter(document: MarkingDocument, order: GuideOrder, place: GuidePlace, id: string): Landmark | null {
   const withIt: MarkingDocument = { ...document, landmarks: { ...document.landmarks, [id]: { x: 0, y: 0 } } }
   return nextLandmark(withIt, order, place)
+}
+
+/** @returns the next set beyond `upTo` in which a landmark is still undecided, or `null` when there is none. */
+export function nextOpenSet(document: MarkingDocument, order: GuideOrder, upTo: GuideSet): GuideSet | null {
+  const later = GUIDE_SETS.slice(GUIDE_SETS.indexOf(upTo) + 1)
+  return later.find(set => order[set].some(landmark => landmarkState(document, landmark.id) === null)) ?? null
 }
 
 export interface GuideProgress {

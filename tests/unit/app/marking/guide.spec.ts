@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
+import { guidedLandmarks } from '#shared/geometry/landmarks'
 import { EMPTY_DOCUMENT } from '~/marking/document'
-import { completedBy, guideOrder, guideProgress, landmarkAfter, nextLandmark } from '~/marking/guide'
+import { completedBy, guideOrder, guideProgress, landmarkAfter, nextLandmark, nextOpenSet } from '~/marking/guide'
 
 const CORE = { upTo: 'core', skipped: [] } as const
 const MORE = { upTo: 'more', skipped: [] } as const
@@ -18,7 +19,13 @@ describe('guideOrder', () => {
     expect(guideOrder('frontal-posterior').core.map(landmark => landmark.id)).toContain('psisLeft')
     expect(guideOrder('frontal-posterior').core.map(landmark => landmark.id)).not.toContain('asisLeft')
   })
-  it('offers beyond the core only what some measure needs', () => {
+  it('leaves nothing out that the view offers, so that every mark can be listed and edited', () => {
+    const { core, more, equipment, unasked } = guideOrder('sagittal')
+    expect([...core, ...more, ...equipment, ...unasked].map(landmark => landmark.id).sort())
+      .toEqual(guidedLandmarks('sagittal').map(landmark => landmark.id).sort())
+    expect(unasked.map(landmark => landmark.id)).toEqual(['wrist'])
+  })
+  it('asks beyond the core only what some measure needs', () => {
     for (const view of ['sagittal', 'frontal-anterior', 'frontal-posterior'] as const) {
       const { core, more, equipment } = guideOrder(view)
       const all = [...core, ...more, ...equipment].map(landmark => landmark.id)
@@ -54,6 +61,15 @@ describe('nextLandmark', () => {
   it('names the one that follows', () => {
     expect(landmarkAfter(EMPTY_DOCUMENT, order, CORE, 'acromion')?.id).toBe('greaterTrochanter')
     expect(landmarkAfter(marking('acromion', 'greaterTrochanter', 'lateralEpicondyle', 'lateralMalleolus'), order, CORE, 'fifthMetatarsal')).toBeNull()
+  })
+})
+
+describe('nextOpenSet', () => {
+  const order = guideOrder('sagittal')
+  it('names the next set in which something is left', () => {
+    expect(nextOpenSet(EMPTY_DOCUMENT, order, 'core')).toBe('more')
+    expect(nextOpenSet(marking(...order.more.map(landmark => landmark.id)), order, 'core')).toBe('equipment')
+    expect(nextOpenSet(EMPTY_DOCUMENT, order, 'equipment')).toBeNull()
   })
 })
 
