@@ -40,7 +40,7 @@ export function useMarkingDraft() {
     return userId && text !== null ? readDraft(text, { userId, stillId }) : null
   }
 
-  return { keep, restore }
+  return { keep, restore, has: (stillId: string) => restore(stillId) !== null }
 }
 
 /** Takes every draft of this tab away, other than those of `exceptUserId`. */

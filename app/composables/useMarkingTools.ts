@@ -1,6 +1,6 @@
 import type { ImagePoint } from '#shared/geometry/point'
 import type { MarkingCommand } from '~/marking/commands/marking-command'
-import type { MarkingDocument } from '~/marking/document'
+import { EMPTY_DOCUMENT, type MarkingDocument } from '~/marking/document'
 import type { ToolContext, ToolId, ToolNotice, ToolState, Transition } from '~/marking/tools/tool'
 import { startTool } from '~/marking/tools/tool-start'
 import type { Size } from '~/marking/viewport'
@@ -28,9 +28,11 @@ export function useMarkingTools(options: MarkingToolsOptions) {
   const stateId = ref('landmark.idle')
   let state: ToolState = startTool('landmark')
 
-  function context(): ToolContext | null {
+  /** Without a marking there is nothing to take and nothing to place: a press moves the picture. */
+  function context(): ToolContext {
     const document = options.document.value
-    return document && { document, picture: options.picture, target: options.target.value, scaleLengthMm: scaleLengthMm.value }
+    const target = document ? options.target.value : null
+    return { document: document ?? EMPTY_DOCUMENT, picture: options.picture, target, scaleLengthMm: scaleLengthMm.value }
   }
 
   function take(transition: Transition | undefined) {
@@ -65,8 +67,7 @@ export function useMarkingTools(options: MarkingToolsOptions) {
   }
 
   function send(kind: PointerKind, at: ImagePoint, reach: number) {
-    const seen = context()
-    if (seen) take(state[kind]?.({ at, reach }, seen))
+    take(state[kind]?.({ at, reach }, context()))
   }
 
   return { toolId, scaleLengthMm, selected, notice, stateId, isGesture: computed(() => !stateId.value.endsWith('.idle')), choose, cancel, send }
