@@ -19,8 +19,8 @@ export function openDatabase(url: string, onError: (error: Error) => void): void
     connectionTimeoutMillis: 2_000,
     idleTimeoutMillis: 30_000,
     application_name: 'standmark',
-    statement_timeout: 8_000,
-    query_timeout: 8_500,
+    statement_timeout: 7_000,
+    query_timeout: 7_500,
     idle_in_transaction_session_timeout: 5_000,
     keepAlive: true,
   })
@@ -38,9 +38,14 @@ function openPool(): Pool {
   return pool
 }
 
+/** Whether the database did not even say that it gave up: the connection hangs. */
+function isHung(error: unknown): boolean {
+  return error instanceof Error && (error.message === 'Query read timeout' || isHung(error.cause))
+}
+
 async function runTransaction<Result>(begin: string, work: (tx: Transaction) => Promise<Result>): Promise<Result> {
   const client = await openPool().connect()
-  let broken: Error | undefined
+  let broken: Error | boolean | undefined
   try {
     // One round trip for both: every request pays it.
     await client.query(begin)
@@ -48,7 +53,9 @@ async function runTransaction<Result>(begin: string, work: (tx: Transaction) => 
     await client.query('commit')
     return result
   } catch (error) {
-    await client.query('rollback').catch((failure: Error) => {
+    // On a connection that hangs the rollback would wait as long again; closing it rolls back too.
+    if (isHung(error)) broken = true
+    else await client.query('rollback').catch((failure: Error) => {
       broken = failure
     })
     throw error
