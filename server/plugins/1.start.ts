@@ -10,7 +10,6 @@ export default defineNitroPlugin(() => {
     openDatabase(databaseUrl, error => logger.warn({ err: error }, 'a database connection broke'))
   } catch (error) {
     if (!(error instanceof SettingsError)) throw error
-    process.stderr.write(`Standmark does not start: ${error.message}\n`)
-    process.exit(78)
+    refuseStart(error.message)
   }
 })
