@@ -1,10 +1,11 @@
 import { afterAll, describe, expect, it } from 'vitest'
 import { AuditListSchema } from '#shared/schemas/audit'
+import { ChartSchema } from '#shared/schemas/patient'
 import { expectBody, expectError, expectIssueAt } from '../fixtures/api/answers'
 import { createClient } from '../fixtures/api/client'
-import { auditOf, closeDatabase, query, refusalOf } from '../fixtures/api/database'
+import { auditOf, closeDatabase, query, refusalOf, withFault } from '../fixtures/api/database'
 import { makeAdministrator, makeClinic, makePatientAccount, makeStudent, makeTherapist } from '../fixtures/api/people'
-import { makePatient, makeSession } from '../fixtures/api/records'
+import { makePatient, makeSession, patientBody } from '../fixtures/api/records'
 
 afterAll(closeDatabase)
 
@@ -92,10 +93,16 @@ describe('the audit trail', () => {
     expect(await auditOf(clinic.id, { requestId: answer.headers.get('x-request-id') ?? '' })).toEqual([])
   })
 
-  it('exists together with the change or not at all: without the line there is no change', async () => {
-    const [before] = await query<{ count: number }>(clinic.id, 'select count(*)::int as count from patient')
-    const without = await query<{ count: number }>(clinic.id, 'select count(*)::int as count from patient p where not exists (select 1 from audit_event a where a.action = \'patient.create\' and a.target_id = p.id::text)')
-    expect(before?.count).toBeGreaterThan(0)
-    expect(without[0]?.count).toBe(0)
+  it('exists together with the change or not at all: where it cannot be written, nothing is changed and nothing is shown', async () => {
+    const patient = await makePatient(therapist)
+    const body = patientBody({ name: 'Never Kept' })
+    await withFault('audit_event', `new.clinic_id = '${clinic.id}'`, async () => {
+      for (const answer of [await therapist.client.post('/api/patients', body), await therapist.client.get(`/api/patients/${patient.id}`), await therapist.client.patch(`/api/patients/${patient.id}`, { heightCm: 111 }, { ifMatch: 1 })]) {
+        expectError(answer, 500, 'internal')
+        expect(answer.text).not.toContain(patient.name)
+      }
+    })
+    expect(await query(clinic.id, 'select id from patient where name = $1', ['Never Kept'])).toEqual([])
+    expect(expectBody(await therapist.client.get(`/api/patients/${patient.id}`), 200, ChartSchema)).toMatchObject({ version: 1, heightCm: patient.heightCm })
   })
 })
