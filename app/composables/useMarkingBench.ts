@@ -70,6 +70,7 @@ export function useMarkingParts({ clip, picture, table, stills: list, isSupporte
   watch(() => stills.current.value?.id, () => {
     tools.choose('landmark')
     tools.selected.value = null
+    tools.chosen.value = null
     guide.requested.value = null
     isAskingNotVisible.value = false
   })

@@ -4,6 +4,8 @@ import type { useMarkingView } from './useMarkingView'
 
 /** How near to a mark counts as on it, CSS pixels. */
 const REACH: Readonly<Record<string, number>> = { mouse: 12, pen: 14, touch: 24 }
+/** The very ring of a mark. */
+const TIGHT_REACH = 7
 /** A wheel notch of 100 zooms by this factor. */
 const WHEEL_ZOOM = 1.2
 
@@ -44,7 +46,7 @@ export function useMarkingPointers(view: ReturnType<typeof useMarkingView>, tool
     const { x, y } = placeOf(event)
     const at = view.toImage(x, y)
     const scale = view.viewport.value?.scale ?? 1
-    if (at) tools.send(kind, at, (REACH[event.pointerType] ?? 12) / scale)
+    if (at) tools.send(kind, at, (REACH[event.pointerType] ?? 12) / scale, TIGHT_REACH / scale)
   }
 
   function onDown(event: PointerEvent) {

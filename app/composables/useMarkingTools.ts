@@ -24,6 +24,8 @@ export function useMarkingTools(options: MarkingToolsOptions) {
   const scaleLengthMm = ref(1000)
   const { preview } = options
   const selected = ref<string | null>(null)
+  /** Gone to by name on the body map or in the list, until the next act. */
+  const chosen = ref<string | null>(null)
   const notice = ref<ToolNotice | null>(null)
   const stateId = ref('landmark.idle')
   let state: ToolState = startTool('landmark')
@@ -32,7 +34,7 @@ export function useMarkingTools(options: MarkingToolsOptions) {
   function context(): ToolContext {
     const document = options.document.value
     const target = document ? options.target.value : null
-    return { document: document ?? EMPTY_DOCUMENT, picture: options.picture, target, scaleLengthMm: scaleLengthMm.value }
+    return { document: document ?? EMPTY_DOCUMENT, picture: options.picture, target, chosen: chosen.value, scaleLengthMm: scaleLengthMm.value }
   }
 
   function take(transition: Transition | undefined) {
@@ -48,6 +50,7 @@ export function useMarkingTools(options: MarkingToolsOptions) {
 
   function finish(command: MarkingCommand) {
     notice.value = null
+    chosen.value = null
     options.run(command)
     // Plumb line and scale are drawn once; the next press is for a landmark again.
     if (command.type === 'plumb-line.set' || command.type === 'scale.set') choose('landmark')
@@ -66,9 +69,9 @@ export function useMarkingTools(options: MarkingToolsOptions) {
     preview.value = null
   }
 
-  function send(kind: PointerKind, at: ImagePoint, reach: number) {
-    take(state[kind]?.({ at, reach }, context()))
+  function send(kind: PointerKind, at: ImagePoint, reach: number, tightReach: number) {
+    take(state[kind]?.({ at, reach, tightReach }, context()))
   }
 
-  return { toolId, scaleLengthMm, selected, notice, stateId, isGesture: computed(() => !stateId.value.endsWith('.idle')), choose, cancel, send }
+  return { toolId, scaleLengthMm, selected, chosen, notice, stateId, isGesture: computed(() => !stateId.value.endsWith('.idle')), choose, cancel, send }
 }

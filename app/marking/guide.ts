@@ -87,6 +87,7 @@ export function guideProgress(document: MarkingDocument, order: GuideOrder, plac
 export function completedBy(document: MarkingDocument, view: View, id: string): readonly string[] {
   const has = (name: string) => document.landmarks[name] !== undefined
   return measuresOf(view)
+    .filter(measure => !(measure.withheldWhen === 'supported' && document.supported))
     .filter(measure => measure.recipes.some(recipe =>
       recipe.views.includes(view)
       && recipe.landmarks.some(name => name === id)

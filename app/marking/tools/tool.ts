@@ -8,6 +8,8 @@ export interface PointerInput {
   readonly at: ImagePoint
   /** How far from a mark still counts as on it, in picture pixels: the target size at the present zoom. */
   readonly reach: number
+  /** The same while something else is about to be placed: the very ring of a mark, whatever points at it. */
+  readonly tightReach: number
 }
 
 /** What a tool may look at. It changes nothing itself. */
@@ -16,6 +18,8 @@ export interface ToolContext {
   readonly picture: Size
   /** The landmark that a press on a free place sets: the next of the guide or the one that was asked for. */
   readonly target: string | null
+  /** A marked landmark that was gone to by name, to be moved: it is taken before anything is placed. */
+  readonly chosen: string | null
   /** Length that a newly drawn scale is given, mm. */
   readonly scaleLengthMm: number
 }

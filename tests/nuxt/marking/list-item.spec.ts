@@ -3,12 +3,15 @@ import { describe, expect, it } from 'vitest'
 import { findLandmark } from '#shared/geometry/landmarks'
 import { MarkingListItem } from '#components'
 
-const landmark = findLandmark('heel')
-if (!landmark) throw new Error('the catalogue has a heel')
+function heel() {
+  const landmark = findLandmark('heel')
+  if (!landmark) throw new Error('the catalogue has a heel')
+  return landmark
+}
 
 function mount(overrides = {}) {
   return mountSuspended(MarkingListItem, {
-    props: { landmark, point: null, hiddenBecause: null, picture: { width: 960, height: 720 }, isSelected: false, ...overrides },
+    props: { landmark: heel(), point: null, hiddenBecause: null, picture: { width: 960, height: 720 }, isSelected: false, ...overrides },
   })
 }
 type Item = Awaited<ReturnType<typeof mount>>

@@ -24,9 +24,9 @@ function setUp(start: MarkingDocument | null = EMPTY_DOCUMENT) {
   const shown = computed(() => document.value && preview.value ? applyCommand(document.value, preview.value) : document.value)
   const readings = useMarkingReadings('sagittal', PICTURE, document, shown)
   const drag = (from: readonly [number, number], to: readonly [number, number]) => {
-    tools.send('onPointerDown', imagePoint(...from), 12)
-    tools.send('onPointerMove', imagePoint(...to), 12)
-    tools.send('onPointerUp', imagePoint(...to), 12)
+    tools.send('onPointerDown', imagePoint(...from), 12, 6)
+    tools.send('onPointerMove', imagePoint(...to), 12, 6)
+    tools.send('onPointerUp', imagePoint(...to), 12, 6)
   }
   return { document, preview, target, done, moves, tools, nudging, readings, drag }
 }
@@ -34,11 +34,11 @@ function setUp(start: MarkingDocument | null = EMPTY_DOCUMENT) {
 describe('useMarkingTools', () => {
   it('does one command a gesture and shows it before', () => {
     const { tools, preview, done, document } = setUp()
-    tools.send('onPointerDown', imagePoint(10, 10), 12)
-    tools.send('onPointerMove', imagePoint(20, 20), 12)
+    tools.send('onPointerDown', imagePoint(10, 10), 12, 6)
+    tools.send('onPointerMove', imagePoint(20, 20), 12, 6)
     expect(preview.value).toMatchObject({ type: 'landmark.place', point: { x: 20, y: 20 } })
     expect(document.value).toEqual(EMPTY_DOCUMENT)
-    tools.send('onPointerUp', imagePoint(20, 20), 12)
+    tools.send('onPointerUp', imagePoint(20, 20), 12, 6)
     expect(preview.value).toBeNull()
     expect(done).toHaveLength(1)
     expect(tools.selected.value).toBe('acromion')
@@ -46,9 +46,9 @@ describe('useMarkingTools', () => {
 
   it('drops the gesture when the tool changes', () => {
     const { tools, preview, done } = setUp()
-    tools.send('onPointerDown', imagePoint(10, 10), 12)
+    tools.send('onPointerDown', imagePoint(10, 10), 12, 6)
     tools.choose('scale')
-    tools.send('onPointerUp', imagePoint(20, 20), 12)
+    tools.send('onPointerUp', imagePoint(20, 20), 12, 6)
     expect([preview.value, done.length, tools.stateId.value]).toEqual([null, 0, 'scale.idle'])
   })
 
@@ -63,9 +63,9 @@ describe('useMarkingTools', () => {
 
   it('only moves the picture where there is no marking', () => {
     const { tools, done, moves } = setUp(null)
-    tools.send('onPointerDown', imagePoint(10, 10), 12)
-    tools.send('onPointerMove', imagePoint(30, 15), 12)
-    tools.send('onPointerUp', imagePoint(30, 15), 12)
+    tools.send('onPointerDown', imagePoint(10, 10), 12, 6)
+    tools.send('onPointerMove', imagePoint(30, 15), 12, 6)
+    tools.send('onPointerUp', imagePoint(30, 15), 12, 6)
     expect([done, moves]).toEqual([[], [{ x: 20, y: 5 }]])
   })
 })
@@ -105,8 +105,8 @@ describe('useMarkingReadings', () => {
   it('follows a drag live and returns when it is dropped', () => {
     const { tools, readings } = setUp(standing)
     const before = trunk(readings)
-    tools.send('onPointerDown', imagePoint(500, 260), 12)
-    tools.send('onPointerMove', imagePoint(560, 260), 12)
+    tools.send('onPointerDown', imagePoint(500, 260), 12, 6)
+    tools.send('onPointerMove', imagePoint(560, 260), 12, 6)
     expect(trunk(readings)).toBeCloseTo(10.8855, 3)
     tools.cancel()
     expect(trunk(readings)).toBe(before)
@@ -115,8 +115,8 @@ describe('useMarkingReadings', () => {
   it('keeps the readings while a plumb line is drawn that is still too short', () => {
     const { tools, readings } = setUp(standing)
     tools.choose('plumb-line')
-    tools.send('onPointerDown', imagePoint(1000, 100), 12)
-    tools.send('onPointerMove', imagePoint(1000, 150), 12)
+    tools.send('onPointerDown', imagePoint(1000, 100), 12, 6)
+    tools.send('onPointerMove', imagePoint(1000, 150), 12, 6)
     expect(trunk(readings)).toBeCloseTo(-2.2026, 3)
     expect(readings.fault.value).toBeNull()
   })

@@ -88,4 +88,9 @@ describe('completedBy', () => {
     expect(completedBy(marking('greaterTrochanter'), 'sagittal', 'lateralMalleolus')).not.toContain('kneeFlexion')
     expect(completedBy(marking('greaterTrochanter', 'lateralEpicondyle'), 'sagittal', 'lateralMalleolus')).toContain('kneeFlexion')
   })
+  it('promises nothing that support withholds', () => {
+    const legs = marking('acromion', 'greaterTrochanter', 'lateralEpicondyle', 'lateralMalleolus', 'heel')
+    expect(completedBy(legs, 'sagittal', 'fifthMetatarsal')).toContain('centreOfMassOffset')
+    expect(completedBy({ ...legs, supported: true }, 'sagittal', 'fifthMetatarsal')).not.toContain('centreOfMassOffset')
+  })
 })

@@ -8,11 +8,12 @@ import type { ToolContext, ToolId, ToolNotice, Transition } from '~/marking/tool
 
 export const PICTURE = { width: 1440, height: 1080 }
 
-interface Start { document?: MarkingDocument, target?: string | null, reach?: number, scaleLengthMm?: number }
+interface Start { document?: MarkingDocument, target?: string | null, chosen?: string | null, reach?: number, tightReach?: number, scaleLengthMm?: number }
 
 /** Plays a gesture on a tool as the bench does: commands are done, previews are only kept. */
 export function gesture(tool: ToolId, start: Start = {}) {
   const reach = start.reach ?? 12
+  const tightReach = start.tightReach ?? 6
   let state = startTool(tool)
   let document = start.document ?? EMPTY_DOCUMENT
   let preview: MarkingCommand | null = null
@@ -20,7 +21,7 @@ export function gesture(tool: ToolId, start: Start = {}) {
   const commands: MarkingCommand[] = []
   const notices: ToolNotice[] = []
   const moves: { x: number, y: number }[] = []
-  const context = (): ToolContext => ({ document, picture: PICTURE, target: start.target ?? null, scaleLengthMm: start.scaleLengthMm ?? 1000 })
+  const context = (): ToolContext => ({ document, picture: PICTURE, target: start.target ?? null, chosen: start.chosen ?? null, scaleLengthMm: start.scaleLengthMm ?? 1000 })
 
   function take(transition: Transition | undefined) {
     if (!transition) return played
@@ -37,9 +38,9 @@ export function gesture(tool: ToolId, start: Start = {}) {
   }
 
   const played = {
-    press: (x: number, y: number) => take(state.onPointerDown?.({ at: imagePoint(x, y), reach }, context())),
-    move: (x: number, y: number) => take(state.onPointerMove?.({ at: imagePoint(x, y), reach }, context())),
-    release: (x: number, y: number) => take(state.onPointerUp?.({ at: imagePoint(x, y), reach }, context())),
+    press: (x: number, y: number) => take(state.onPointerDown?.({ at: imagePoint(x, y), reach, tightReach }, context())),
+    move: (x: number, y: number) => take(state.onPointerMove?.({ at: imagePoint(x, y), reach, tightReach }, context())),
+    release: (x: number, y: number) => take(state.onPointerUp?.({ at: imagePoint(x, y), reach, tightReach }, context())),
     key: (key: string) => take(state.onKey?.(key, context())),
     cancel: () => take(state.onCancel?.()),
     get document() { return document },

@@ -49,9 +49,14 @@ describe('landmark tool', () => {
     expect(played.selected).toBe('acromion')
   })
 
-  it('places the target close beside a marked landmark', () => {
-    const played = gesture('landmark', { document: marked, target: 'canthus', reach: 12 }).press(500, 253).release(500, 253)
+  it('places the target close beside a marked landmark, however wide the reach of a finger', () => {
+    const played = gesture('landmark', { document: marked, target: 'canthus', reach: 40 }).press(500, 253).release(500, 253)
     expect(played.document.landmarks).toEqual({ ...marked.landmarks, canthus: { x: 500, y: 253 } })
+  })
+
+  it('takes a landmark that was gone to by name in the whole reach, even while another is to be placed', () => {
+    const played = gesture('landmark', { document: marked, target: 'canthus', chosen: 'acromion', reach: 40 }).press(480, 253).release(481, 253)
+    expect(played.document.landmarks.acromion).toEqual({ x: 501, y: 260 })
   })
 
   it('only selects on a press without a move', () => {
