@@ -52,26 +52,7 @@ export function createSupervisor(folder) {
 
   /** @param {Entry} entry */
   function launch(entry) {
-    const { service } = entry
-    const log = openLog(logFile(folder.logs, service.name), { fresh: entry.restarts === 0 })
-    const [program, ...programArguments] = boundToUs(service)
-    const child = spawn(program, programArguments, { cwd: service.cwd, env: service.env, detached: true, stdio: ['ignore', log, log] })
-    closeSync(log)
-    entry.child = child
-    entry.startedAt = Date.now()
-    if (child.pid !== undefined) record(folder, service, child.pid)
-    entry.ended = new Promise((resolve) => {
-      child.once('error', (error) => {
-        onEnd(entry, error.message)
-        resolve()
-      })
-      child.once('exit', (code, signal) => {
-        // What the process had started itself (an ffmpeg, say) has no master any more.
-        endGroup(child.pid, 'SIGKILL')
-        onEnd(entry, signal ? `was ended by ${signal}` : `ended with code ${code}`)
-        resolve()
-      })
-    })
+    launchEntry(folder, entry, how => onEnd(entry, how))
   }
 
   /**
@@ -106,14 +87,8 @@ export function createSupervisor(folder) {
       if (isStopping) throw new StartError('stopped while starting')
       entries.push(entry)
       launch(entry)
-      const deadline = Date.now() + service.startSeconds * 1000
-      while (!isStopping && entry.failure === null && Date.now() < deadline) {
-        if (await service.check().catch(() => false)) {
-          entry.isReady = entry.failure === null
-          if (entry.isReady) return
-        }
-        await sleep(Date.now() - entry.startedAt > SLOW_AFTER_MS ? SLOW_CHECK_EVERY_MS : CHECK_EVERY_MS)
-      }
+      await waitUntilReady(entry, () => isStopping)
+      if (entry.isReady) return
       if (isStopping) throw new StartError('stopped while starting')
       const how = entry.failure ?? `gave no answer within ${service.startSeconds} s`
       throw new StartError(`${service.name} did not start: it ${how}`, { details: lastLines(logFile(folder.logs, service.name)) })
@@ -134,6 +109,51 @@ export function createSupervisor(folder) {
       isStopping = true
       for (const entry of entries) if (entry.child) endGroup(entry.child.pid, 'SIGKILL')
     },
+  }
+}
+
+/**
+ * Starts the process of a service and keeps its record.
+ * @param {import('./data-folder.mjs').DataFolder} folder
+ * @param {Entry} entry
+ * @param {(how: string) => void} onEnd
+ */
+function launchEntry(folder, entry, onEnd) {
+  const { service } = entry
+  const log = openLog(logFile(folder.logs, service.name), { fresh: entry.restarts === 0 })
+  const [program, ...programArguments] = boundToUs(service)
+  const child = spawn(program, programArguments, { cwd: service.cwd, env: service.env, detached: true, stdio: ['ignore', log, log] })
+  closeSync(log)
+  entry.child = child
+  entry.startedAt = Date.now()
+  if (child.pid !== undefined) record(folder, service, child.pid)
+  entry.ended = new Promise((resolve) => {
+    child.once('error', (error) => {
+      onEnd(error.message)
+      resolve()
+    })
+    child.once('exit', (code, signal) => {
+      // What the process had started itself (an ffmpeg, say) has no master any more.
+      endGroup(child.pid, 'SIGKILL')
+      onEnd(signal ? `was ended by ${signal}` : `ended with code ${code}`)
+      resolve()
+    })
+  })
+}
+
+/**
+ * Asks a service until it answers, falls, its time is up or everything stops; sets `isReady` when it answered.
+ * @param {Entry} entry
+ * @param {() => boolean} isStopping
+ */
+async function waitUntilReady(entry, isStopping) {
+  const deadline = Date.now() + entry.service.startSeconds * 1000
+  while (!isStopping() && entry.failure === null && Date.now() < deadline) {
+    if (await entry.service.check().catch(() => false)) {
+      entry.isReady = entry.failure === null
+      if (entry.isReady) return
+    }
+    await sleep(Date.now() - entry.startedAt > SLOW_AFTER_MS ? SLOW_CHECK_EVERY_MS : CHECK_EVERY_MS)
   }
 }
 

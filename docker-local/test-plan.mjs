@@ -52,22 +52,22 @@ export function planTests(selection) {
 export function countReport(report, { hasFailed }) {
   const files = isRecord(report) && Array.isArray(report.testResults) ? report.testResults : null
   if (files === null) return { passed: 0, failed: 1, skipped: 0 }
-  const counts = { passed: 0, failed: 0, skipped: 0 }
-  for (const file of files) {
-    const tests = isRecord(file) && Array.isArray(file.assertionResults) ? file.assertionResults : []
-    let hasFailedTest = false
-    for (const test of tests) {
-      const status = isRecord(test) ? test.status : undefined
-      if (status === 'passed') counts.passed += 1
-      else if (status === 'failed') {
-        counts.failed += 1
-        hasFailedTest = true
-      } else counts.skipped += 1
-    }
-    if (isRecord(file) && file.status === 'failed' && !hasFailedTest) counts.failed += 1
-  }
+  const counts = sumCounts(files.map(countFile))
   if (hasFailed && counts.failed === 0) counts.failed = 1
   return counts
+}
+
+/**
+ * @param {unknown} file one file's part of the report
+ * @returns {Counts}
+ */
+function countFile(file) {
+  if (!isRecord(file)) return { passed: 0, failed: 0, skipped: 0 }
+  const states = (Array.isArray(file.assertionResults) ? file.assertionResults : []).map(test => isRecord(test) ? test.status : undefined)
+  const passed = states.filter(state => state === 'passed').length
+  const failed = states.filter(state => state === 'failed').length
+  const couldNotRun = file.status === 'failed' && failed === 0
+  return { passed, failed: couldNotRun ? 1 : failed, skipped: states.length - passed - failed }
 }
 
 /**

@@ -63,10 +63,11 @@ async function begin(life) {
   for (const check of plan.checks) results.push(await runCheck(check, instance.folder.logs))
   const server = await served
   if (server instanceof Error) complainAbout(server)
+  const env = server instanceof Error ? null : server
   for (const { name, filters } of plan.projects) {
-    results.push(SERVED_PROJECTS.has(name) && (server === null || server instanceof Error)
+    results.push(SERVED_PROJECTS.has(name) && env === null
       ? fail(name, 'the server it needs did not start')
-      : await runProject({ name, filters, isWhole: plan.isWhole, folder: instance.folder.run, env: server instanceof Error ? {} : server ?? {} }))
+      : await runProject({ name, filters, isWhole: plan.isWhole, folder: instance.folder.run, env: env ?? {} }))
   }
   await whole.stop()
   const counts = sumCounts(results)
