@@ -48,7 +48,6 @@ export default defineNuxtConfig({
     defaultLocale: 'en',
     strategy: 'no_prefix',
     detectBrowserLanguage: false,
-    telemetry: false,
     locales: [{ code: 'en', language: 'en-US', name: 'English', files: LOCALE_FILES.map(name => `en/${name}.json`) }],
   },
   runtimeConfig: {

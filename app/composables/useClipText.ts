@@ -30,7 +30,7 @@ export function useClipText() {
   function statusText(entry: UploadEntry): string {
     const { phase, pause, problem, reason } = entry.status
     if (phase === 'sending') return remainingText(entry)
-    if (phase === 'paused' && pause) return t(`clip.pause.${pause}`)
+    if (phase === 'paused') return t(`clip.pause.${pause ?? 'retrying'}`)
     if (phase === 'stopped' && problem) return problemText(problem.code)
     if (phase === 'refused' && reason) return t(`clip.refused.${reason}`)
     return t(`clip.phase.${phase}`)
