@@ -20,6 +20,10 @@ export class SettingsError extends Error {
 
 const SAMPLE_SECRETS = /change-?me|secret-?secret|example|standmark-demo|password|^(.)\1+$/i
 
+const WEB = ['http:', 'https:']
+const POSTGRES = ['postgres:', 'postgresql:']
+const SMTP = ['smtp:', 'smtps:']
+
 type Environment = Readonly<Record<string, string | undefined>>
 
 function need(env: Environment, name: string, meaning: string): string {
@@ -46,6 +50,7 @@ function readSecret(env: Environment, mode: Settings['mode']): string {
 function readOrigins(env: Environment, mode: Settings['mode']): string[] {
   const origins = need(env, 'STANDMARK_ORIGINS', 'the addresses people open, comma between them, for example https://standmark.example.org')
     .split(',').map(origin => origin.trim().replace(/\/$/, '')).filter(Boolean)
+  if (origins.length === 0) throw new SettingsError('STANDMARK_ORIGINS names no address')
   for (const origin of origins) {
     if (!URL.canParse(origin) || new URL(origin).origin !== origin) throw new SettingsError(`STANDMARK_ORIGINS holds «${origin}», which is not an origin`)
     if (mode === 'production' && !origin.startsWith('https://')) throw new SettingsError(`STANDMARK_ORIGINS holds «${origin}»: production needs https`)
@@ -53,11 +58,17 @@ function readOrigins(env: Environment, mode: Settings['mode']): string[] {
   return origins
 }
 
+/** An address of one of these schemes; the complaint does not repeat it, for it may hold a password. */
+function addressOf(name: string, value: string, schemes: readonly string[]): string {
+  if (!URL.canParse(value) || !schemes.includes(new URL(value).protocol)) throw new SettingsError(`${name} is not an address that begins with ${schemes.map(scheme => `${scheme}//`).join(' or ')}`)
+  return value
+}
+
 function readStorage(env: Environment): Settings['storage'] {
-  const endpoint = need(env, 'STANDMARK_STORAGE_ENDPOINT', 'the address of the S3-compatible storage')
+  const endpoint = addressOf('STANDMARK_STORAGE_ENDPOINT', need(env, 'STANDMARK_STORAGE_ENDPOINT', 'the address of the S3-compatible storage'), WEB)
   return {
     endpoint,
-    publicEndpoint: env.STANDMARK_STORAGE_PUBLIC_ENDPOINT?.trim() || endpoint,
+    publicEndpoint: addressOf('STANDMARK_STORAGE_PUBLIC_ENDPOINT', env.STANDMARK_STORAGE_PUBLIC_ENDPOINT?.trim() || endpoint, WEB),
     region: env.STANDMARK_STORAGE_REGION?.trim() || 'us-east-1',
     bucket: need(env, 'STANDMARK_STORAGE_BUCKET', 'the bucket for the clips'),
     key: need(env, 'STANDMARK_STORAGE_KEY', 'the access key of the storage'),
@@ -71,14 +82,15 @@ function readStorage(env: Environment): Settings['storage'] {
  */
 export function readSettings(env: Environment): Settings {
   const mode = oneOf(env, 'STANDMARK_MODE', ['production', 'demo'])
+  const smtpUrl = env.STANDMARK_SMTP_URL?.trim()
   return {
     mode,
     role: oneOf(env, 'STANDMARK_ROLE', ['all', 'web', 'worker']),
-    databaseUrl: need(env, 'STANDMARK_DATABASE_URL', 'the PostgreSQL address of the serving role'),
+    databaseUrl: addressOf('STANDMARK_DATABASE_URL', need(env, 'STANDMARK_DATABASE_URL', 'the PostgreSQL address of the serving role'), POSTGRES),
     secret: readSecret(env, mode),
     origins: readOrigins(env, mode),
     storage: readStorage(env),
-    smtpUrl: env.STANDMARK_SMTP_URL?.trim() || null,
+    smtpUrl: smtpUrl ? addressOf('STANDMARK_SMTP_URL', smtpUrl, SMTP) : null,
     mailFrom: env.STANDMARK_MAIL_FROM?.trim() || 'Standmark <no-reply@localhost>',
     workDir: env.STANDMARK_WORK_DIR?.trim() || '/tmp/standmark',
     ffmpeg: env.STANDMARK_FFMPEG?.trim() || 'ffmpeg',

@@ -16,6 +16,7 @@ describe('the built server', () => {
     ['without a secret', { STANDMARK_SECRET: undefined }, /STANDMARK_SECRET is not set/],
     ['with a short secret', { STANDMARK_SECRET: 'short' }, /STANDMARK_SECRET is shorter than 32/],
     ['without storage', { STANDMARK_STORAGE_ENDPOINT: undefined }, /STANDMARK_STORAGE_ENDPOINT is not set/],
+    ['with a storage that is no address', { STANDMARK_STORAGE_ENDPOINT: 'storage.internal' }, /STANDMARK_STORAGE_ENDPOINT is not an address/],
     ['without origins', { STANDMARK_ORIGINS: undefined }, /STANDMARK_ORIGINS is not set/],
     ['with an unknown mode', { STANDMARK_MODE: 'test' }, /STANDMARK_MODE is «test»/],
     ['with an unknown role', { STANDMARK_ROLE: 'everything' }, /STANDMARK_ROLE is «everything»/],
