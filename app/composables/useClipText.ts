@@ -29,8 +29,8 @@ export function useClipText() {
   /** Where an upload stands, in one line. */
   function statusText(entry: UploadEntry): string {
     const { phase, pause, problem, reason } = entry.status
+    if (pause) return t(`clip.pause.${pause}`)
     if (phase === 'sending') return remainingText(entry)
-    if (phase === 'paused') return t(`clip.pause.${pause ?? 'retrying'}`)
     if (phase === 'stopped' && problem) return problemText(problem.code)
     if (phase === 'refused' && reason) return t(`clip.refused.${reason}`)
     return t(`clip.phase.${phase}`)

@@ -3,8 +3,8 @@ import { missingParts, wholeParts } from './part-plan'
 import { persist } from './patience'
 import { sendParts } from './send-parts'
 import type { SlotPool } from './slot-pool'
-import type { StoredPart, UploadNetwork, UploadPlan, UploadProblem, UploadSurroundings } from './upload-network'
-import { toUploadProblem } from './upload-network'
+import { toUploadProblem, UploadProblem } from './upload-network'
+import type { StoredPart, UploadNetwork, UploadPlan, UploadSurroundings } from './upload-network'
 import type { UploadEvent } from './upload-state'
 
 export interface UploadTask {
@@ -54,7 +54,7 @@ export async function runUpload(task: UploadTask, tools: UploadTools, signal: Ab
     const begun = await begin(run, (clip) => { clipId = clip.id })
     const clip = begun ? await sendAndJoin(run, begun) : null
     const id = clipId
-    if (id) await followClip(run, clip ?? await ask(run, () => tools.network.readClip(id)))
+    if (id) await followClip(run, clip ?? await readJoined(run, id))
   } catch (error) {
     if (!signal.aborted) tools.report({ type: 'stopped', problem: toUploadProblem(error) })
     else if (signal.reason === CANCEL) await drop(run, clipId)
@@ -98,20 +98,27 @@ async function sendAndJoin(run: Run, begun: Begun): Promise<Clip | null> {
   const { network, report } = run
   let { stored } = begun
   for (let round = 1; ; round++) {
-    const etags = await sendRest(run, begun, stored)
-    report({ type: 'joining' })
     try {
+      const etags = await sendRest(run, begun, stored)
+      report({ type: 'joining' })
       const parts = etags ?? await listEtags(run, begun)
       return await ask(run, () => network.complete(begun.clipId, { parts }))
     } catch (error) {
       run.signal.throwIfAborted()
       const problem = toUploadProblem(error)
-      // An earlier call did it, and only its answer was lost.
+      // An earlier call joined them and only its answer was lost, or the upload was dropped meanwhile: the clip says which.
       if (problem.code === 'upload-not-open') return null
       if (!isAboutParts(problem) || round >= MAX_ROUNDS) throw problem
       stored = (await ask(run, () => network.readUpload(begun.clipId))).parts
     }
   }
+}
+
+/** @throws UploadProblem `upload-not-open` when the storage does not know the upload and yet nothing was joined */
+async function readJoined(run: Run, clipId: string): Promise<Clip> {
+  const clip = await ask(run, () => run.network.readClip(clipId))
+  if (clip.status === 'uploading') throw new UploadProblem(409, 'upload-not-open')
+  return clip
 }
 
 function isAboutParts({ code }: UploadProblem): boolean {

@@ -206,6 +206,13 @@ describe('failures that do not pass', () => {
     expect(it.status()).toMatchObject({ phase: 'stopped', problem: { code: 'file-changed' } })
   })
 
+  it('stops when the storage has dropped the upload, instead of waiting for a clip that never comes', async () => {
+    const it = setUp({ size: 100 })
+    it.failures['putPart 1'] = [new UploadProblem(404, 'upload-not-open')]
+    await it.start()
+    expect(it.status()).toMatchObject({ phase: 'stopped', problem: { code: 'upload-not-open' } })
+  })
+
   it('ends the other parts when one cannot be sent', async () => {
     const it = setUp({ size: 4000 })
     it.failures['putPart 2'] = [new UploadProblem(400, 'storage-refused')]
