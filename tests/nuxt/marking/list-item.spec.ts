@@ -56,6 +56,12 @@ describe('MarkingListItem', () => {
     expect(item.emitted('place')).toBeUndefined()
   })
 
+  it('keeps the coordinate that was not typed anew as exact as it was', async () => {
+    const item = await mount({ point: { x: 365.0583, y: 659.5629 } })
+    await type(item, 1, '660')
+    expect(item.emitted('place')).toEqual([[{ x: 365.0583, y: 660 }]])
+  })
+
   it('names its fields, so that they can be found and spoken', async () => {
     const item = await mount()
     expect(item.findAll('label').map(label => label.find('.sr-only').text())).toEqual(['Heel, x', 'Heel, y'])
