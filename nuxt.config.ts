@@ -11,6 +11,17 @@ const LOCALE_FILES = [
   'common', 'account', 'landmarks', 'measures', 'marking', 'clip', 'patient', 'session', 'timeline', 'home', 'clinic', 'errors', 'help',
 ]
 
+/**
+ * Zod tries `new Function` when a schema is made, which the content security policy refuses and reports. Schemas are made
+ * while modules load, before any plugin of ours runs: the setting has to be in zod itself, in what the browser gets.
+ */
+const zodWithoutEval = {
+  name: 'zod-without-eval',
+  transform: (code: string, id: string, options?: { ssr?: boolean }) => !options?.ssr && /\/zod\/v4\/core\/core\.js$/.test(id)
+    ? { code: `${code}\nglobalConfig.jitless = true\n`, map: null }
+    : null,
+}
+
 export default defineNuxtConfig({
   compatibilityDate: '2026-06-01',
   modules: [
@@ -118,5 +129,5 @@ export default defineNuxtConfig({
       config.handlers = config.handlers?.filter(handler => handler?.route !== '/api/_auth/session')
     },
   },
-  vite: { build: { target: 'es2022' } },
+  vite: { build: { target: 'es2022' }, plugins: [zodWithoutEval] },
 })
