@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto'
 import { readFileSync } from 'node:fs'
 import { readFile } from 'node:fs/promises'
+import { basename } from 'node:path'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import AxeBuilder from '@axe-core/playwright'
 import type { FileChooser, Page } from 'playwright-core'
@@ -22,9 +23,12 @@ const WARD_NETWORK = 24 * MIB
 const PREPARED_MS = 150_000
 const DEMO = readFileSync(demoFigure('nadia-side-05.mp4').path)
 let big: BigClip
+/** The name that the browser sees. */
+let bigName: string
 
 beforeAll(async () => {
   big = await makeBigClip()
+  bigName = basename(big.path)
 }, 120_000)
 afterAll(closeStorage)
 
@@ -50,7 +54,7 @@ async function drop(page: Page, files: { name: string, base64: string }[]): Prom
 async function sendBig(page: Page): Promise<void> {
   await page.getByLabel(PICK).setInputFiles(big.path)
   await page.getByRole('button', { name: 'Send 1 clip' }).click()
-  await expectSeen(uploadsOf(page).getByText(big.fileName))
+  await expectSeen(uploadsOf(page).getByText(bigName))
 }
 
 describe('sending a clip', () => {
@@ -131,8 +135,8 @@ describe('sending a clip', () => {
     await expect.poll(async () => (await clipsOf(ward.therapist, ward.sessionId)).length).toBe(1)
     const clip = await newestClip(ward.therapist, ward.sessionId)
     await untilStored(ward.therapist, clip.id, 2)
-    await page.getByRole('button', { name: `Cancel ${big.fileName}` }).click()
-    const question = page.getByRole('dialog', { name: `Stop sending ${big.fileName}?` })
+    await page.getByRole('button', { name: `Cancel ${bigName}` }).click()
+    const question = page.getByRole('dialog', { name: `Stop sending ${bigName}?` })
     await question.getByRole('button', { name: 'Cancel' }).click()
     await uploadsOf(page).getByText('Cancelled').waitFor()
     expect((await ward.therapist.client.get(`/api/clips/${clip.id}`)).status).toBe(404)
@@ -171,6 +175,7 @@ describe('an upload that is cut', () => {
     // The page is closed in the middle. What the browser keeps names neither the file nor the person.
     const [note] = await keptNotes(page)
     expect(Object.keys(note ?? {}).sort()).toEqual(['begunAt', 'clipId', 'fingerprint', 'userId'])
+    expect(parts.mostAtOnce).toBe(4)
     await page.close()
     const held = await storedParts(ward.therapist, clip.id)
     expect(held.length).toBeLessThan(Math.ceil(big.bytes / (8 * MIB)))
@@ -186,7 +191,6 @@ describe('an upload that is cut', () => {
     await uploadsOf(page).getByText('Ready to mark').waitFor({ timeout: PREPARED_MS })
 
     expect(parts.asked.slice(askedTillClosed).filter(part => held.includes(part))).toEqual([])
-    expect(parts.mostAtOnce).toBeLessThanOrEqual(4)
     expect(await waitForClip(ward.therapist, clip.id)).toMatchObject({ status: 'ready', frameCount: big.presented.length })
     expect(await storedObject(ward.therapist, clip.id)).toEqual({ size: big.bytes, sha256: createHash('sha256').update(await readFile(big.path)).digest('hex') })
     expect(await keptNotes(page)).toEqual([])
@@ -219,7 +223,7 @@ describe('an upload that is cut', () => {
       await writer.close()
     }, { base64: DEMO.toString('base64'), filling: 64 * MIB })
     await slowDown(page, 12 * MIB)
-    await page.getByRole('button', { name: PICK }).click()
+    await page.locator('button', { hasText: PICK }).click()
     await page.getByRole('button', { name: 'Send 1 clip' }).click()
     await expect.poll(async () => (await clipsOf(ward.therapist, ward.sessionId)).length).toBe(1)
     const clip = await newestClip(ward.therapist, ward.sessionId)
