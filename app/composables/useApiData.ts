@@ -1,7 +1,14 @@
+import { promiseTimeout } from '@vueuse/core'
+
+/** How long a step to another page waits for its data before it shows that it is loading. */
+const PATIENCE_MS = 400
+
 interface ApiDataOptions {
   query?: MaybeRefOrGetter<Record<string, unknown>>
   /** The page makes no sense without it: a refusal shows the error page with its status. */
   isFatal?: boolean
+  /** What is read next depends on it: it is waited for however long it takes. */
+  isNeeded?: boolean
   /** The page is shown at once and the data follows. */
   isLazy?: boolean
 }
@@ -35,7 +42,10 @@ export function useApiData<Answer>(path: MaybeRefOrGetter<string>, options: ApiD
     isPending: computed(() => asyncData.status.value === 'pending' || asyncData.status.value === 'idle'),
     refresh: () => asyncData.refresh(),
   }
-  const ready = Promise.resolve(asyncData).then(() => {
+  // Quick data comes with its page, without a flash of grey lines; where it is slow, the page comes first and says so.
+  const isStep = import.meta.client && !nuxtApp.isHydrating && !options.isNeeded
+  const arrival: Promise<unknown>[] = [Promise.resolve(asyncData), ...(isStep ? [promiseTimeout(PATIENCE_MS)] : [])]
+  const ready = Promise.race(arrival).then(() => {
     refuse()
     return parts
   })
