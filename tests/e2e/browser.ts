@@ -141,6 +141,7 @@ export async function signInThroughForm(page: Page, { email, password }: { email
   await page.getByLabel('Password', { exact: true }).fill(password)
   await page.getByRole('button', { name: 'Sign in', exact: true }).click()
   await page.waitForURL(url => url.pathname !== '/sign-in')
+  await page.getByRole('heading', { name: 'Sign in', exact: true }).waitFor({ state: 'hidden' })
   await page.getByRole('heading', { level: 1 }).first().waitFor()
 }
 
